@@ -1,0 +1,10 @@
+export * from './bodies';
+export * from './defaults';
+export * from './demonstrations';
+export { type DeepReadonly, type Document, describeRange, type QuantityInfo, quantityInfo } from './fields';
+export * from './jobs';
+export * from './layouts';
+export * from './materials';
+export * from './parts';
+export * from './reading';
+export * from './schema';

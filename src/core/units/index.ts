@@ -1,0 +1,4 @@
+export * from './expression';
+export * from './figure';
+export * from './formatting';
+export * from './quantities';
