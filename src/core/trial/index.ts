@@ -1,0 +1,2 @@
+export * from './evaluation';
+export * from './motion';
