@@ -223,6 +223,3 @@ export const MATERIALS: Readonly<Record<MaterialName, Material>> = {
   ),
   'PA12 printed': printed(1010, [40, 50], 1.6, 0.4, 'typical of makers, from memory'),
 };
-
-export const findMaterial = (name: string): Material | undefined =>
-  Object.hasOwn(MATERIALS, name) ? MATERIALS[name as MaterialName] : undefined;
