@@ -1,2 +1,4 @@
 export * from './formula';
+export * from './hullSection';
+export * from './hydrostatics';
 export * from './wheelProperties';
