@@ -1,0 +1,433 @@
+import { discretiseLean } from './leanStep';
+import { type AxisLayout, countRows, type PlanLayout } from './momentumPlanLayout';
+import type { FirmSupport, LeanSupport, MomentumPlanProblem } from './momentumPlanProblem';
+import type { StageProblem } from './solver';
+
+/** The pass before, about which the servo rows are linearised: scaled momentum and control, per axis. */
+export interface PreviousPass {
+  /** axes x (N + 1) */
+  readonly momentum: readonly Float64Array[];
+  /** axes x (N + 1), the control of the interval that starts at the node */
+  readonly control: readonly Float64Array[];
+}
+
+/** An interval of support narrower than this share of the torque scale fixes the torque. */
+const fixedWidth = 1e-9;
+/** Reference time of the weight on change of torque, s. */
+const changeTime = 0.1;
+/** Weight left on the plan's own objective when the shared scalar is what is made small. */
+const faintWeight = 1e-9;
+
+/** Writes squares and rows of affine forms into a stage problem; keeps the constant the squares leave. */
+interface Writer {
+  readonly problem: StageProblem;
+  readonly at: Int32Array;
+  readonly by: Float64Array;
+  count: number;
+  constant: number;
+  row: number;
+  /** constant of the form being written */
+  offset: number;
+}
+
+function addTerm(w: Writer, index: number, coefficient: number): void {
+  w.at[w.count] = index;
+  w.by[w.count] = coefficient;
+  w.count += 1;
+}
+
+function clearForm(w: Writer): void {
+  w.count = 0;
+  w.offset = 0;
+}
+
+/** Adds weight * (form + offset)^2 to the objective of node k. */
+function addSquare(w: Writer, k: number, weight: number): void {
+  const { sizes, hessian, gradient } = w.problem;
+  const { width } = sizes;
+  for (let i = 0; i < w.count; i++) {
+    const row = (k * width + w.at[i]) * width;
+    gradient[k * width + w.at[i]] += 2 * weight * w.by[i] * w.offset;
+    for (let j = 0; j < w.count; j++) hessian[row + w.at[j]] += 2 * weight * w.by[i] * w.by[j];
+  }
+  w.constant += weight * w.offset * w.offset;
+}
+
+/** Next row: sign * (form + offset) <= bound + loosening * shared. */
+function addRow(w: Writer, sign: number, bound: number, loosening: number): void {
+  const { sizes, rows, rowsShared, bound: bounds } = w.problem;
+  const at = w.row * sizes.width;
+  for (let i = 0; i < w.count; i++) rows[at + w.at[i]] += sign * w.by[i];
+  bounds[w.row] = bound - sign * w.offset;
+  if (sizes.shared > 0) rowsShared[w.row] = -loosening;
+  w.row += 1;
+}
+
+/** A row that limits nothing, so that the number of rows does not hang on the data. */
+function addIdleRow(w: Writer): void {
+  w.problem.bound[w.row] = 1;
+  w.row += 1;
+}
+
+/** How the torque of an interval hangs on its control: torque share = slope * control + constant. */
+interface ControlForm {
+  readonly slope: number;
+  readonly constant: number;
+  /** share of the torque scale, folded over both ends of the interval */
+  readonly least: number;
+  readonly most: number;
+}
+
+/** Bounds the support sets to the momentum rate of interval k, as shares of the torque scale. */
+function boundControl(support: FirmSupport, layout: AxisLayout, k: number, isFree: boolean): ControlForm {
+  const nodes = support.ask.length;
+  let least = -Infinity;
+  let most = Infinity;
+  let carried = 0;
+  for (let end = 0; end < 2; end++) {
+    const node = (k + end) % nodes;
+    const force = support.verticalForce[node];
+    carried = Math.max(carried, force);
+    least = Math.max(least, (force * support.pressureMin[k] - support.ask[node]) / layout.torqueScale);
+    most = Math.min(most, (force * support.pressureMax[k] - support.ask[node]) / layout.torqueScale);
+  }
+  const isFixed = Math.abs(most - least) < fixedWidth && !(isFree && carried > 0);
+  return isFixed
+    ? { slope: 0, constant: (least + most) / 2, least, most }
+    : { slope: 1, constant: 0, least, most };
+}
+
+const freeControl: ControlForm = { slope: 1, constant: 0, least: -Infinity, most: Infinity };
+
+function formOfControl(w: Writer, layout: AxisLayout, control: ControlForm, factor: number): void {
+  if (control.slope !== 0) addTerm(w, layout.control, factor * control.slope);
+  w.offset += factor * control.constant;
+}
+
+function writeDynamics(
+  problem: MomentumPlanProblem,
+  w: Writer,
+  layout: AxisLayout,
+  control: ControlForm,
+  i: number,
+  k: number,
+  lean: ReturnType<typeof discretiseLean> | null,
+): void {
+  const { sizes, dynamics, drift } = w.problem;
+  const { width, states, controls } = sizes;
+  const row = (state: number) => (k * states + state - controls) * width;
+  const gain = (layout.torqueScale * problem.step) / layout.momentumScale;
+  dynamics[row(layout.momentum) + layout.momentum] = 1;
+  dynamics[row(layout.momentum) + layout.control] = gain * control.slope;
+  drift[k * states + layout.momentum - controls] = gain * control.constant;
+  dynamics[row(layout.previous) + layout.control] = control.slope;
+  drift[k * states + layout.previous - controls] = control.constant;
+  if (!lean) return;
+  const { demand } = problem.axes[i].support as LeanSupport;
+  const d0 = demand[k];
+  const d1 = demand[(k + 1) % demand.length];
+  const scales = [layout.leanScale, layout.leanRateScale];
+  for (let a = 0; a < 2; a++) {
+    const at = row(layout.lean + a);
+    for (let b = 0; b < 2; b++) {
+      dynamics[at + layout.lean + b] = (lean.state[a * 2 + b] * scales[b]) / scales[a];
+    }
+    // torque of the array on the body is minus the rate of its momentum
+    dynamics[at + layout.control] = (-lean.held[a] * layout.torqueScale) / scales[a];
+    drift[k * states + layout.lean + a - controls] =
+      (lean.held[a] * d0 + lean.ramp[a] * (d1 - d0)) / scales[a];
+  }
+}
+
+function writeObjective(
+  problem: MomentumPlanProblem,
+  w: Writer,
+  layout: AxisLayout,
+  control: ControlForm,
+  i: number,
+  k: number,
+  widest: number,
+  faint: number,
+): void {
+  const { support } = problem.axes[i];
+  const weights = problem.weights;
+  const isInterval = k < problem.intervals;
+  if (isInterval || problem.ends.kind === 'given') {
+    clearForm(w);
+    addTerm(w, layout.momentum, 1);
+    addSquare(w, k, faint * weights.momentum);
+    if (layout.lean >= 0) {
+      clearForm(w);
+      addTerm(w, layout.lean, 1);
+      addSquare(w, k, faint * weights.lean);
+    }
+    // change of torque; after the last interval of a sequence it falls back to nothing
+    clearForm(w);
+    if (isInterval) formOfControl(w, layout, control, changeTime / problem.step);
+    addTerm(w, layout.previous, -changeTime / problem.step);
+    addSquare(w, k, faint * weights.change);
+  }
+  if (!isInterval) return;
+  clearForm(w);
+  formOfControl(w, layout, control, 1);
+  addSquare(w, k, faint * weights.torque);
+  if (control.slope === 0) {
+    clearForm(w);
+    addTerm(w, layout.control, 1);
+    addSquare(w, k, 1);
+  }
+  if (support.kind === 'firm' && widest > 0) {
+    const next = (k + 1) % support.ask.length;
+    const force = (support.verticalForce[k] + support.verticalForce[next]) / 2;
+    if (force <= 0) return;
+    const ask = (support.ask[k] + support.ask[next]) / 2;
+    clearForm(w);
+    formOfControl(w, layout, control, layout.torqueScale / force / widest);
+    w.offset += (ask / force - (support.pressureMin[k] + support.pressureMax[k]) / 2) / widest;
+    addSquare(w, k, faint * weights.pressure);
+  }
+}
+
+function writePressureRows(
+  problem: MomentumPlanProblem,
+  w: Writer,
+  plan: PlanLayout,
+  layout: AxisLayout,
+  control: ControlForm,
+  i: number,
+  k: number,
+): void {
+  const support = problem.axes[i].support as FirmSupport;
+  if (plan.mode !== 'centre of pressure') {
+    if (control.slope === 0) {
+      addIdleRow(w);
+      addIdleRow(w);
+      return;
+    }
+    clearForm(w);
+    formOfControl(w, layout, control, 1);
+    addRow(w, 1, control.most, 0);
+    addRow(w, -1, -control.least, 0);
+    return;
+  }
+  for (let end = 0; end < 2; end++) {
+    const node = (k + end) % support.ask.length;
+    const force = support.verticalForce[node] / layout.torqueScale;
+    const ask = support.ask[node] / layout.torqueScale;
+    clearForm(w);
+    formOfControl(w, layout, control, 1);
+    if (control.slope === 0) {
+      addIdleRow(w);
+      addIdleRow(w);
+    } else {
+      addRow(w, 1, force * support.pressureMax[k] - ask, force);
+      addRow(w, -1, ask - force * support.pressureMin[k], force);
+    }
+  }
+}
+
+/**
+ * Servo torque at node k, linearised about the pass before, over its limit:
+ * gimbals (J tilt'' + h body rate cos(tilt)) with tilt'' = (jump of torque over step) / (E cos) + rate^2 tan.
+ */
+function writeServoRows(
+  problem: MomentumPlanProblem,
+  w: Writer,
+  plan: PlanLayout,
+  layout: AxisLayout,
+  control: ControlForm,
+  i: number,
+  k: number,
+  previous: PreviousPass | null,
+  tightening: number,
+): void {
+  const { array, bodyRate } = problem.axes[i];
+  const servo = array.servo;
+  if (!servo) return;
+  const sine = previous ? previous.momentum[i][k] : 0;
+  const share = previous ? previous.control[i][k] : 0;
+  const cosine = array.kind === 'gimballed' ? Math.sqrt(Math.max(1e-6, 1 - sine * sine)) : 1;
+  const unit = servo.gimbals / servo.torque;
+  const rate = layout.torqueScale / (layout.momentumScale * cosine);
+  const jump = (unit * servo.gimbalInertia * rate) / problem.step;
+  clearForm(w);
+  if (k < problem.intervals) formOfControl(w, layout, control, jump);
+  addTerm(w, layout.previous, -jump);
+  const gyro = unit * servo.wheelMomentum * cosine;
+  if (layout.lean >= 0) addTerm(w, layout.leanRate, gyro * layout.leanRateScale);
+  w.offset += unit * servo.gimbalInertia * (rate * share) ** 2 * (sine / cosine);
+  if (bodyRate) w.offset += gyro * bodyRate[k % bodyRate.length];
+  const loosening = plan.mode === 'servo torque' ? 1 / servo.torque : 0;
+  addRow(w, 1, tightening, loosening);
+  addRow(w, -1, tightening, loosening);
+}
+
+function writeLinearRows(
+  problem: MomentumPlanProblem,
+  w: Writer,
+  plan: PlanLayout,
+  layout: AxisLayout,
+  control: ControlForm,
+  i: number,
+  k: number,
+  previous: PreviousPass | null,
+  tightening: number,
+): void {
+  const { array, support } = problem.axes[i];
+  const rows = countRows(problem, plan.mode, i, k);
+  const isScaled = plan.mode === 'momentum';
+  if (rows.momentum > 0) {
+    const most = array.kind === 'gimballed' ? Math.sin(array.tiltMax) : 1;
+    const least = array.kind === 'gimballed' ? -Math.sin(array.tiltMin) : 1;
+    clearForm(w);
+    addTerm(w, layout.momentum, 1);
+    addRow(w, 1, isScaled ? 0 : most, isScaled ? most : 0);
+    addRow(w, -1, isScaled ? 0 : least, isScaled ? least : 0);
+  }
+  if (rows.pressure > 0) writePressureRows(problem, w, plan, layout, control, i, k);
+  if (rows.torque > 0) {
+    const most = array.torque / layout.torqueScale;
+    const loosening = plan.mode === 'torque' ? 1 / layout.torqueScale : 0;
+    clearForm(w);
+    formOfControl(w, layout, control, 1);
+    addRow(w, 1, most, loosening);
+    addRow(w, -1, most, loosening);
+  }
+  if (rows.servo > 0) writeServoRows(problem, w, plan, layout, control, i, k, previous, tightening);
+  if (rows.lean > 0) {
+    const { leanMin, leanMax } = support as LeanSupport;
+    const loosening = plan.mode === 'lean' ? 1 / layout.leanScale : 0;
+    // lean is a cubic between nodes to O(step^4), and these are its Bezier control points
+    const reach = ((problem.step / 3) * layout.leanRateScale) / layout.leanScale;
+    for (const side of [reach, -reach]) {
+      clearForm(w);
+      addTerm(w, layout.lean, 1);
+      addTerm(w, layout.leanRate, side);
+      addRow(w, 1, leanMax / layout.leanScale, loosening);
+      addRow(w, -1, -leanMin / layout.leanScale, loosening);
+    }
+  }
+}
+
+/** Ellipse of tilt rate at both ends of interval k: |(rate of momentum / r, momentum)| <= momentum at 90 degrees. */
+function writeCones(
+  problem: MomentumPlanProblem,
+  w: Writer,
+  plan: PlanLayout,
+  layout: AxisLayout,
+  control: ControlForm,
+): void {
+  const gain = (layout.torqueScale * problem.step) / layout.momentumScale;
+  const isShared = plan.mode === 'momentum' || plan.mode === 'tilt rate';
+  for (let end = 0; end < 2; end++) {
+    clearForm(w);
+    addRow(w, 1, plan.mode === 'momentum' ? 0 : 1, isShared ? 1 : 0);
+    formOfControl(w, layout, control, 1);
+    addRow(w, -1, 0, 0);
+    clearForm(w);
+    addTerm(w, layout.momentum, 1);
+    if (end === 1) formOfControl(w, layout, control, gain);
+    addRow(w, -1, 0, 0);
+  }
+}
+
+function writeBoundary(problem: MomentumPlanProblem, plan: PlanLayout, out: StageProblem): void {
+  const { states, controls } = out.sizes;
+  const { ends } = problem;
+  let row = 0;
+  if (ends.kind === 'cyclic') {
+    for (; row < states; row++) {
+      out.boundaryStart[row * states + row] = -1;
+      out.boundaryEnd[row * states + row] = 1;
+    }
+    return;
+  }
+  plan.axes.forEach((layout, i) => {
+    const isLean = layout.lean >= 0;
+    const pin = (side: Float64Array, state: number, value: number) => {
+      side[row * states + state - controls] = 1;
+      out.boundaryValue[row] = value;
+      row += 1;
+    };
+    const start = ends.start[i];
+    pin(out.boundaryStart, layout.momentum, start.momentum / layout.momentumScale);
+    pin(out.boundaryStart, layout.previous, 0);
+    if (isLean) pin(out.boundaryStart, layout.lean, start.lean / layout.leanScale);
+    if (isLean) pin(out.boundaryStart, layout.leanRate, start.leanRate / layout.leanRateScale);
+    const end = ends.end[i];
+    if (!end) return;
+    pin(out.boundaryEnd, layout.momentum, end.momentum / layout.momentumScale);
+    if (isLean) pin(out.boundaryEnd, layout.lean, end.lean / layout.leanScale);
+    if (isLean) pin(out.boundaryEnd, layout.leanRate, end.leanRate / layout.leanRateScale);
+  });
+}
+
+const halfOfWidest = (support: FirmSupport): number => {
+  let widest = 0;
+  for (let k = 0; k < support.pressureMin.length; k++) {
+    widest = Math.max(widest, (support.pressureMax[k] - support.pressureMin[k]) / 2);
+  }
+  return widest;
+};
+
+/**
+ * Writes a plan as a stage program.
+ *
+ * @param problem    plan to be made, in SI
+ * @param plan       its layout
+ * @param previous   scaled pass about which servo rows are linearised; null for rest position
+ * @param tightening share of the servo torque that may be used, per axis
+ * @param out        stage problem of the layout's sizes, overwritten
+ * @returns the constant that the program's objective leaves out
+ *
+ * O(N). Source: momentum theorem; e = 2 h sin(tilt) gives torque = -de/dt and the tilt rate limit as the
+ * ellipse (de/dt)^2 / r^2 + e^2 <= (2 h)^2.
+ */
+export function assemblePlan(
+  problem: MomentumPlanProblem,
+  plan: PlanLayout,
+  previous: PreviousPass | null,
+  tightening: readonly number[],
+  out: StageProblem,
+): number {
+  for (const part of [out.hessian, out.gradient, out.dynamics, out.drift, out.rows, out.rowsShared])
+    part.fill(0);
+  for (const part of [out.bound, out.boundaryStart, out.boundaryEnd, out.boundaryValue]) part.fill(0);
+  out.sharedGradient.fill(1);
+  const w: Writer = {
+    problem: out,
+    at: new Int32Array(8),
+    by: new Float64Array(8),
+    count: 0,
+    constant: 0,
+    row: 0,
+    offset: 0,
+  };
+  const faint = plan.mode === 'plan' ? 1 : faintWeight;
+  const widest = problem.axes.map(({ support }) => (support.kind === 'firm' ? halfOfWidest(support) : 0));
+  const steps = problem.axes.map(({ support }) =>
+    support.kind === 'lean'
+      ? discretiseLean(support.inertia, support.stiffness, support.damping, problem.step)
+      : null,
+  );
+  const isFree = plan.mode === 'centre of pressure';
+  const controls: ControlForm[] = plan.axes.map(() => freeControl);
+  for (let k = 0; k <= problem.intervals; k++) {
+    for (let i = 0; i < plan.axes.length; i++) {
+      const { support } = problem.axes[i];
+      const layout = plan.axes[i];
+      if (support.kind === 'firm' && k < problem.intervals) {
+        controls[i] = boundControl(support, layout, k, isFree);
+      }
+      if (k < problem.intervals) writeDynamics(problem, w, layout, controls[i], i, k, steps[i]);
+      writeObjective(problem, w, layout, controls[i], i, k, widest[i], faint);
+      writeLinearRows(problem, w, plan, layout, controls[i], i, k, previous, tightening[i]);
+    }
+    if (k === problem.intervals) continue;
+    for (let i = 0; i < plan.axes.length; i++) {
+      if (problem.axes[i].array.kind === 'gimballed') writeCones(problem, w, plan, plan.axes[i], controls[i]);
+    }
+  }
+  writeBoundary(problem, plan, out);
+  return w.constant;
+}

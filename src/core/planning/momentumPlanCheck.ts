@@ -1,0 +1,194 @@
+import { discretiseLean } from './leanStep';
+import { type AxisPlan, type LimitName, limitNames, type MomentumPlanProblem } from './momentumPlanProblem';
+
+/** What a plan does about one axis, node by node (N + 1 nodes; a cyclic plan repeats node 0 as node N). */
+export interface AxisSchedule {
+  /** N m s: momentum of the array along the axis; straight between nodes */
+  readonly momentum: Float64Array;
+  /** N m: torque of the array on the body over the interval that starts at the node; 0 after a sequence */
+  readonly torque: Float64Array;
+  /** rad; zero for a reaction wheel */
+  readonly tilt: Float64Array;
+  /** rad/s, just after the node */
+  readonly tiltRate: Float64Array;
+  /** rad/s^2 at the node: jump of the tilt rate over one step, and its smooth part */
+  readonly tiltAcceleration: Float64Array;
+  /** N m of one servo at the node; zero without a servo */
+  readonly servoTorque: Float64Array;
+  /** m, just after the node; zero where there is no firm support or no force on it */
+  readonly pressure: Float64Array;
+  /** rad and rad/s; zero on firm footing */
+  readonly lean: Float64Array;
+  readonly leanRate: Float64Array;
+}
+
+/** The worst instant of one limit over a whole plan. */
+export interface LimitFinding {
+  readonly limit: LimitName;
+  readonly axis: number;
+  /** s from the start of the plan */
+  readonly time: number;
+  /** by how much the limit is passed, in its own unit; negative inside */
+  readonly excess: number;
+  /** asked and had, in the limit's own unit: spare is (have - ask) / have */
+  readonly ask: number;
+  readonly have: number;
+}
+
+/** Keeps the worst of each limit: the instant with the greatest ask over have. */
+class Findings {
+  readonly worst = new Map<string, LimitFinding>();
+
+  note(limit: LimitName, axis: number, time: number, ask: number, have: number): void {
+    const key = `${limit} ${axis}`;
+    const kept = this.worst.get(key);
+    // written so that NaN is kept and cannot be lost again
+    if (kept && !(ask - have > kept.excess) && !Number.isNaN(ask - have)) return;
+    if (kept && Number.isNaN(kept.excess)) return;
+    this.worst.set(key, { limit, axis, time, excess: ask - have, ask, have });
+  }
+}
+
+const mix = (values: Float64Array | null, k: number, share: number): number => {
+  if (!values) return 0;
+  const a = values[k % values.length];
+  return a + (values[(k + 1) % values.length] - a) * share;
+};
+
+/** Servo torque at one instant of an interval, the jump of tilt rate at its node spread over one step. */
+function servoTorqueAt(axis: AxisPlan, tilt: number, rate: number, jump: number, bodyRate: number): number {
+  const { servo, kind } = axis.array;
+  if (!servo) return 0;
+  const smooth = kind === 'gimballed' ? rate * rate * Math.tan(tilt) : 0;
+  return (
+    servo.gimbals * (servo.gimbalInertia * (jump + smooth) + servo.wheelMomentum * bodyRate * Math.cos(tilt))
+  );
+}
+
+function checkInterval(
+  problem: MomentumPlanProblem,
+  schedule: AxisSchedule,
+  i: number,
+  k: number,
+  refine: number,
+  findings: Findings,
+): void {
+  const axis = problem.axes[i];
+  const { array, support, bodyRate } = axis;
+  const { step } = problem;
+  const e0 = schedule.momentum[k];
+  const rate = (schedule.momentum[k + 1] - e0) / step;
+  const fine =
+    support.kind === 'lean'
+      ? discretiseLean(support.inertia, support.stiffness, support.damping, step / refine)
+      : null;
+  let lean = schedule.lean[k];
+  let leanRate = schedule.leanRate[k];
+  for (let j = 0; j <= refine; j++) {
+    const share = j / refine;
+    const time = (k + share) * step;
+    const e = e0 + rate * share * step;
+    if (array.kind === 'gimballed') {
+      const tilt = Math.asin(Math.max(-1, Math.min(1, e / array.momentum)));
+      const tiltRate = rate / (array.momentum * Math.cos(tilt));
+      const bound = array.momentum * Math.sin(e >= 0 ? array.tiltMax : -array.tiltMin);
+      findings.note('momentum', i, time, Math.abs(e), bound);
+      findings.note('tilt rate', i, time, Math.abs(tiltRate), array.tiltRate);
+      if (array.servo) {
+        const body = mix(bodyRate, k, share) + leanRate;
+        const jump = j === 0 ? schedule.tiltAcceleration[k] - tiltRate * tiltRate * Math.tan(tilt) : 0;
+        const torque = servoTorqueAt(axis, tilt, tiltRate, jump, body);
+        findings.note('servo torque', i, time, Math.abs(torque), array.servo.torque);
+      }
+    } else {
+      findings.note('momentum', i, time, Math.abs(e), array.momentum);
+    }
+    if (array.torque < Infinity) findings.note('torque', i, time, Math.abs(rate), array.torque);
+    if (support.kind === 'firm') {
+      const force = mix(support.verticalForce, k, share);
+      const moment = mix(support.ask, k, share) + rate;
+      const most = force * support.pressureMax[k] - moment;
+      const least = moment - force * support.pressureMin[k];
+      const half = (force * (support.pressureMax[k] - support.pressureMin[k])) / 2;
+      // as a moment about the middle of the support: stays finite when the feet carry nothing
+      findings.note('centre of pressure', i, time, half - Math.min(most, least), half);
+    } else {
+      const middle = (support.leanMax + support.leanMin) / 2;
+      findings.note('lean', i, time, Math.abs(lean - middle), support.leanMax - middle);
+      if (fine && j < refine) {
+        const d0 = mix(support.demand, k, share);
+        const d1 = mix(support.demand, k, (j + 1) / refine);
+        const next =
+          fine.state[0] * lean +
+          fine.state[1] * leanRate +
+          fine.held[0] * (d0 - rate) +
+          fine.ramp[0] * (d1 - d0);
+        leanRate =
+          fine.state[2] * lean +
+          fine.state[3] * leanRate +
+          fine.held[1] * (d0 - rate) +
+          fine.ramp[1] * (d1 - d0);
+        lean = next;
+      }
+    }
+  }
+  if (support.kind === 'lean') {
+    // the schedule's own next state must be where the motion really goes
+    const scale = Math.max(support.leanMax, -support.leanMin);
+    const miss = Math.abs(lean - schedule.lean[k + 1]) / scale;
+    if (!(miss <= 1e-6)) findings.note('lean', i, (k + 1) * step, Infinity, scale);
+  }
+}
+
+/**
+ * Checks every limit of a plan on a grid finer than its nodes, from the problem and the schedule alone.
+ *
+ * Between nodes momentum runs straight and everything else follows from it by the laws of the array and of
+ * the lean; nothing of the solver's is used.
+ *
+ * @param schedules one for each axis, N + 1 nodes
+ * @param refine    points looked at in each interval
+ * @returns the worst instant of every limit of every axis, in the order of limitNames
+ *
+ * O(N refine). Allocates.
+ */
+export function checkPlanLimits(
+  problem: MomentumPlanProblem,
+  schedules: readonly AxisSchedule[],
+  refine: number,
+): LimitFinding[] {
+  const findings = new Findings();
+  for (let i = 0; i < problem.axes.length; i++) {
+    for (let k = 0; k < problem.intervals; k++) checkInterval(problem, schedules[i], i, k, refine, findings);
+  }
+  return limitNames.flatMap((limit) =>
+    problem.axes.flatMap((_, i) => findings.worst.get(`${limit} ${i}`) ?? []),
+  );
+}
+
+/** Whether every limit holds to `tolerance` of what there is. */
+export function isWithinLimits(
+  problem: MomentumPlanProblem,
+  findings: readonly LimitFinding[],
+  tolerance: number,
+): boolean {
+  return findings.every(({ limit, axis, excess, have }) => {
+    const { array } = problem.axes[axis];
+    // half of a support can be nothing; its moment is measured against what the array can give
+    const scale = limit === 'centre of pressure' ? Math.max(have, scaleOfTorque(array)) : have;
+    return excess <= tolerance * scale;
+  });
+}
+
+const scaleOfTorque = (array: AxisPlan['array']): number =>
+  array.kind === 'gimballed' ? array.momentum * array.tiltRate : array.torque;
+
+/** Servo torque of one servo at every node of a schedule. */
+export function fillServoTorque(axis: AxisPlan, schedule: AxisSchedule): void {
+  const { servoTorque, tilt, tiltRate, tiltAcceleration, leanRate } = schedule;
+  for (let k = 0; k < servoTorque.length; k++) {
+    const body = mix(axis.bodyRate, k, 0) + leanRate[k];
+    const smooth = tiltRate[k] * tiltRate[k] * Math.tan(tilt[k]);
+    servoTorque[k] = servoTorqueAt(axis, tilt[k], tiltRate[k], tiltAcceleration[k] - smooth, body);
+  }
+}

@@ -1,0 +1,132 @@
+import type { Residuals } from './solverOutcome';
+import type { StagePoint, StageProblem } from './stageProblem';
+
+// Written apart from the solver's own products on purpose: it trusts nothing the solver has computed but
+// the point and its multipliers, and recomputes the slack from the limits.
+
+const matrixTimes = (m: Float64Array, at: number, columns: number, x: Float64Array): number => {
+  let sum = 0;
+  for (let c = 0; c < columns; c++) sum += m[at + c] * x[c];
+  return sum;
+};
+
+interface RowCheck {
+  limits: number;
+  dualCone: number;
+  complementarity: number;
+}
+
+/** Limits of stage k: outside by how much, multipliers outside by how much, and their product. */
+function checkRows(
+  problem: StageProblem,
+  point: StagePoint,
+  k: number,
+  z: Float64Array,
+  out: RowCheck,
+): void {
+  const { sizes } = problem;
+  const w = point.border.subarray(sizes.boundaryRows);
+  const first = sizes.rowStart[k];
+  const slack = new Float64Array(sizes.rowStart[k + 1] - first);
+  for (let i = 0; i < slack.length; i++) {
+    const r = first + i;
+    slack[i] =
+      problem.bound[r] -
+      matrixTimes(problem.rows, r * sizes.width, sizes.width, z) -
+      matrixTimes(problem.rowsShared, r * sizes.shared, sizes.shared, w);
+    out.complementarity += slack[i] * point.dual[r];
+  }
+  for (let i = 0; i < sizes.linearRows[k]; i++) {
+    out.limits = Math.max(out.limits, -slack[i]);
+    out.dualCone = Math.max(out.dualCone, -point.dual[first + i]);
+  }
+  for (let c = sizes.coneStart[k]; c < sizes.coneStart[k + 1]; c++) {
+    const at = sizes.coneRow[c];
+    const dim = sizes.coneDim[c];
+    const s = slack.subarray(at - first, at - first + dim);
+    const l = point.dual.subarray(at, at + dim);
+    out.limits = Math.max(out.limits, Math.hypot(...s.subarray(1)) - s[0]);
+    out.dualCone = Math.max(out.dualCone, Math.hypot(...l.subarray(1)) - l[0]);
+  }
+}
+
+/**
+ * Recomputes the optimality conditions of a stage program from the problem and a point alone.
+ *
+ * @param problem   the program
+ * @param point     z, multipliers and shared scalars; its slack is not read
+ * @param objective value to measure complementarity against
+ *
+ * NaN anywhere comes back as NaN, which is within no tolerance. O(N width^2). Allocates.
+ * Source: Boyd and Vandenberghe, Convex Optimization, section 5.9.2.
+ */
+export function checkOptimality(problem: StageProblem, point: StagePoint, objective: number): Residuals {
+  const { sizes } = problem;
+  const { stages, states, controls, width, shared, boundaryRows } = sizes;
+  const rows: RowCheck = { limits: 0, dualCone: 0, complementarity: 0 };
+  let equations = 0;
+  let stationarity = 0;
+  const sharedGradient = Array.from(
+    { length: shared },
+    (_, j) => problem.sharedGradient[j] + problem.sharedHessian[j] * point.border[boundaryRows + j],
+  );
+  for (let k = 0; k <= stages; k++) {
+    const z = point.z.subarray(k * width, (k + 1) * width);
+    const gradient = Float64Array.from(
+      { length: width },
+      (_, a) =>
+        problem.gradient[k * width + a] + matrixTimes(problem.hessian, (k * width + a) * width, width, z),
+    );
+    checkRows(problem, point, k, z, rows);
+    for (let r = sizes.rowStart[k]; r < sizes.rowStart[k + 1]; r++) {
+      for (let a = 0; a < width; a++) gradient[a] += problem.rows[r * width + a] * point.dual[r];
+      for (let j = 0; j < shared; j++)
+        sharedGradient[j] += problem.rowsShared[r * shared + j] * point.dual[r];
+    }
+    for (let i = 0; i < states; i++) {
+      if (k > 0) gradient[controls + i] -= point.dynamicsDual[(k - 1) * states + i];
+      for (let b = 0; b < boundaryRows; b++) {
+        const start = k === 0 ? problem.boundaryStart[b * states + i] : 0;
+        const end = k === stages ? problem.boundaryEnd[b * states + i] : 0;
+        gradient[controls + i] += (start + end) * point.border[b];
+      }
+      if (k === stages) continue;
+      const row = (k * states + i) * width;
+      const reached = matrixTimes(problem.dynamics, row, width, z) + problem.drift[k * states + i];
+      equations = Math.max(equations, Math.abs(reached - point.z[(k + 1) * width + controls + i]));
+      for (let a = 0; a < width; a++) {
+        gradient[a] += problem.dynamics[row + a] * point.dynamicsDual[k * states + i];
+      }
+    }
+    for (let a = k === stages ? controls : 0; a < width; a++) {
+      stationarity = Math.max(stationarity, Math.abs(gradient[a]));
+    }
+  }
+  for (let j = 0; j < shared; j++) stationarity = Math.max(stationarity, Math.abs(sharedGradient[j]));
+  const first = point.z.subarray(controls, width);
+  const last = point.z.subarray(stages * width + controls);
+  for (let b = 0; b < boundaryRows; b++) {
+    const sum =
+      matrixTimes(problem.boundaryStart, b * states, states, first) +
+      matrixTimes(problem.boundaryEnd, b * states, states, last);
+    equations = Math.max(equations, Math.abs(sum - problem.boundaryValue[b]));
+  }
+  return {
+    equations,
+    limits: rows.limits,
+    stationarity,
+    dualCone: rows.dualCone,
+    complementarity: Math.abs(rows.complementarity) / (1 + Math.abs(objective)),
+  };
+}
+
+/** Whether every residual is within its tolerance; NaN never is. */
+export function isOptimal(r: Residuals, tolerance: number, gapTolerance: number): boolean {
+  return (
+    r.equations <= tolerance &&
+    r.limits <= tolerance &&
+    r.stationarity <= tolerance &&
+    r.dualCone <= tolerance &&
+    r.complementarity <= gapTolerance
+  );
+}
