@@ -15,7 +15,7 @@ export const STRIDER: Rig = {
   body: {
     kind: 'legged',
     legs: 2,
-    torso: { length: 0.12, width: 0.17, height: 0.16, mass: 2.9, rise: 0.1 },
+    torso: { length: 0.12, width: 0.17, height: 0.16, mass: 3.5, rise: 0.1 },
     hips: { width: 0.1, pitch: 0, height: 0.3 },
     thigh: { length: 0.16, mass: 0.3 },
     shank: { length: 0.16, mass: 0.2 },
