@@ -1,0 +1,3 @@
+export * from './leastSquares';
+export * from './logs/logReader';
+export * from './statistics';
