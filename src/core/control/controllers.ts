@@ -120,7 +120,7 @@ export function stepController(
       s[C.gathered] = before + lean * dt;
       s[C.rate] = c.kp * lean + c.ki * s[C.gathered]! + c.kd * leanRate;
       const command = s[C.command]! + s[C.rate]! * dt;
-      s[C.command] = command > tiltLimit ? tiltLimit : command < -tiltLimit ? -tiltLimit : command;
+      s[C.command] = command > tiltLimit ? tiltLimit : Math.max(command, -tiltLimit);
       if (command !== s[C.command] && s[C.rate]! * c.ki * lean > 0) s[C.gathered] = before;
       return s[C.command]!;
     }
@@ -153,7 +153,7 @@ function stepFeedback(
     g.tiltRate * s[C.rate]!;
   s[C.rate] = rate;
   const command = s[C.command]! + rate * dt;
-  const held = command > tiltLimit ? tiltLimit : command < -tiltLimit ? -tiltLimit : command;
+  const held = command > tiltLimit ? tiltLimit : Math.max(command, -tiltLimit);
   s[C.command] = held;
   if (held === command) s[C.tiltGathered]! += held * dt;
   else s[C.rate] = 0;
@@ -208,7 +208,7 @@ function stepPlanned(
     leanFactor,
     rateFactor,
     tiltFactor,
-    room > 0 ? room : 0,
+    Math.max(room, 0),
     dt,
   );
   return planned + added;

@@ -203,16 +203,19 @@ export interface LoopBasis {
   readonly throughPlant: number;
 }
 
+/** What a frequency response needs of plant and estimator, sampled once. */
+export interface LoopParts {
+  readonly sampled: SampledPlant;
+  readonly estimator: ReturnType<typeof describeEstimator>;
+}
+
+export const prepareLoop = (plant: RollTiltPlant, estimator: EstimatorModel): LoopParts => ({
+  sampled: samplePlant(plant),
+  estimator: describeEstimator(estimator),
+});
+
 /** Computes the basis of a law for a plant and an estimator at given angles (rad per sample) and one radius. */
-export function createLoopBasis(
-  plant: RollTiltPlant,
-  estimator: EstimatorModel,
-  law: Law,
-  theta: Float64Array,
-  radius = 1,
-): LoopBasis {
-  const p = samplePlant(plant);
-  const e = describeEstimator(estimator);
+export function createLoopBasis(parts: LoopParts, law: Law, theta: Float64Array, radius = 1): LoopBasis {
   const points = theta.length;
   const names = LAW_GAINS[law].length;
   const basis: LoopBasis = {
@@ -225,13 +228,21 @@ export function createLoopBasis(
     hIm: new Float64Array(names * points),
     throughPlant: law === 'feedback' ? 2 : 3,
   };
+  fillLoopBasis(parts, basis, radius);
+  return basis;
+}
+
+/** Recomputes a basis in place for the angles it now holds. */
+export function fillLoopBasis(parts: LoopParts, basis: LoopBasis, radius: number): void {
+  const { sampled: p, estimator: e } = parts;
+  const theta = basis.theta;
   const plantWork = createTransferWork(p.plantStates, 1);
   const estimatorWork = createTransferWork(2, 1);
   const yRe = new Float64Array(4);
   const yIm = new Float64Array(4);
   const eRe = new Float64Array(2);
   const eIm = new Float64Array(2);
-  for (let i = 0; i < points; i++) {
+  for (let i = 0; i < basis.points; i++) {
     const zRe = radius * Math.cos(theta[i]!);
     const zIm = radius * Math.sin(theta[i]!);
     respondPlant(p, zRe, zIm, radius, theta[i]!, plantWork, yRe, yIm);
@@ -241,9 +252,8 @@ export function createLoopBasis(
       eRe[1] = yRe[1]!;
       eIm[1] = yIm[1]!;
     } else respondEstimator(e, zRe, zIm, estimatorWork, yRe, yIm, eRe, eIm);
-    fillPoint(basis, i, zRe, zIm, plant.sampleTime, eRe, eIm, yRe, yIm);
+    fillPoint(basis, i, zRe, zIm, p.sampleTime, eRe, eIm, yRe, yIm);
   }
-  return basis;
 }
 
 function respondPlant(

@@ -1,5 +1,12 @@
 import { findSpectralRadius } from './linear/spectrum';
-import { buildClosedLoop, createLoopBasis, evaluateLoopGain, type LoopModel } from './loopModel';
+import {
+  buildClosedLoop,
+  createLoopBasis,
+  evaluateLoopGain,
+  fillLoopBasis,
+  type LoopModel,
+  prepareLoop,
+} from './loopModel';
 
 /** How far a holding loop is from not holding. */
 export interface Margins {
@@ -164,10 +171,12 @@ export function measureMargins(respond: Response, from: number, to: number, poin
 
 /** The loop gain of a sampled loop as a function of frequency (rad/s). */
 export function respondLoop(loop: LoopModel): Response {
-  const theta = new Float64Array(1);
+  const parts = prepareLoop(loop.plant, loop.estimator);
+  const basis = createLoopBasis(parts, loop.law, new Float64Array(1));
   return (omega, out) => {
-    theta[0] = omega * loop.plant.sampleTime;
-    evaluateLoopGain(createLoopBasis(loop.plant, loop.estimator, loop.law, theta), loop.gains, 0, 1, out);
+    basis.theta[0] = omega * loop.plant.sampleTime;
+    fillLoopBasis(parts, basis, 1);
+    evaluateLoopGain(basis, loop.gains, 0, 1, out);
   };
 }
 
