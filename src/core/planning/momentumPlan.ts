@@ -132,11 +132,7 @@ function scheduleAxis(
   return out;
 }
 
-function passOf(
-  problem: MomentumPlanProblem,
-  layout: PlanLayout,
-  axes: readonly AxisSchedule[],
-): PreviousPass {
+function passOf(layout: PlanLayout, axes: readonly AxisSchedule[]): PreviousPass {
   return {
     momentum: axes.map((a, i) => a.momentum.map((v) => v / layout.axes[i].momentumScale)),
     control: axes.map((a, i) => a.torque.map((v) => -v / layout.axes[i].torqueScale)),
@@ -174,7 +170,7 @@ export function attemptPlan(problem: MomentumPlanProblem, options: PlanOptions, 
       const objective = (outcome.objective + constant) / problem.intervals;
       return { kind: 'planned', axes, objective, residuals, limits, iterations };
     }
-    previous = passOf(problem, layout, axes);
+    previous = passOf(layout, axes);
     // the linearisation settles on its own in a pass or two; what is left after that is taken off the limit
     if (pass > 0) {
       for (let i = 0; i < tightening.length; i++) {

@@ -35,19 +35,42 @@ export interface LimitFinding {
   readonly have: number;
 }
 
-/** Keeps the worst of each limit: the instant with the greatest ask over have. */
-class Findings {
-  readonly worst = new Map<string, LimitFinding>();
-
-  note(limit: LimitName, axis: number, time: number, ask: number, have: number): void {
-    const key = `${limit} ${axis}`;
-    const kept = this.worst.get(key);
-    // written so that NaN is kept and cannot be lost again
-    if (kept && !(ask - have > kept.excess) && !Number.isNaN(ask - have)) return;
-    if (kept && Number.isNaN(kept.excess)) return;
-    this.worst.set(key, { limit, axis, time, excess: ask - have, ask, have });
-  }
+interface Worst {
+  time: number;
+  excess: number;
+  ask: number;
+  have: number;
 }
+
+/** The worst of each limit of each axis: the instant at which ask passes have by most. */
+type Findings = (Worst | null)[];
+
+function note(
+  findings: Findings,
+  limit: number,
+  axis: number,
+  time: number,
+  ask: number,
+  have: number,
+): void {
+  const at = axis * limitNames.length + limit;
+  const excess = ask - have;
+  const kept = findings[at];
+  if (!kept) {
+    findings[at] = { time, excess, ask, have };
+    return;
+  }
+  // written so that NaN is kept and cannot be lost again
+  if (excess <= kept.excess || Number.isNaN(kept.excess)) return;
+  kept.time = time;
+  kept.excess = excess;
+  kept.ask = ask;
+  kept.have = have;
+}
+
+const [momentumLimit, rateLimit, torqueLimit, servoLimit, pressureLimit, leanLimit] = limitNames.map(
+  (_, i) => i,
+);
 
 const mix = (values: Float64Array | null, k: number, share: number): number => {
   if (!values) return 0;
@@ -92,18 +115,18 @@ function checkInterval(
       const tilt = Math.asin(Math.max(-1, Math.min(1, e / array.momentum)));
       const tiltRate = rate / (array.momentum * Math.cos(tilt));
       const bound = array.momentum * Math.sin(e >= 0 ? array.tiltMax : -array.tiltMin);
-      findings.note('momentum', i, time, Math.abs(e), bound);
-      findings.note('tilt rate', i, time, Math.abs(tiltRate), array.tiltRate);
+      note(findings, momentumLimit, i, time, Math.abs(e), bound);
+      note(findings, rateLimit, i, time, Math.abs(tiltRate), array.tiltRate);
       if (array.servo) {
         const body = mix(bodyRate, k, share) + leanRate;
         const jump = j === 0 ? schedule.tiltAcceleration[k] - tiltRate * tiltRate * Math.tan(tilt) : 0;
         const torque = servoTorqueAt(axis, tilt, tiltRate, jump, body);
-        findings.note('servo torque', i, time, Math.abs(torque), array.servo.torque);
+        note(findings, servoLimit, i, time, Math.abs(torque), array.servo.torque);
       }
     } else {
-      findings.note('momentum', i, time, Math.abs(e), array.momentum);
+      note(findings, momentumLimit, i, time, Math.abs(e), array.momentum);
     }
-    if (array.torque < Infinity) findings.note('torque', i, time, Math.abs(rate), array.torque);
+    if (array.torque < Infinity) note(findings, torqueLimit, i, time, Math.abs(rate), array.torque);
     if (support.kind === 'firm') {
       const force = mix(support.verticalForce, k, share);
       const moment = mix(support.ask, k, share) + rate;
@@ -111,10 +134,10 @@ function checkInterval(
       const least = moment - force * support.pressureMin[k];
       const half = (force * (support.pressureMax[k] - support.pressureMin[k])) / 2;
       // as a moment about the middle of the support: stays finite when the feet carry nothing
-      findings.note('centre of pressure', i, time, half - Math.min(most, least), half);
+      note(findings, pressureLimit, i, time, half - Math.min(most, least), half);
     } else {
       const middle = (support.leanMax + support.leanMin) / 2;
-      findings.note('lean', i, time, Math.abs(lean - middle), support.leanMax - middle);
+      note(findings, leanLimit, i, time, Math.abs(lean - middle), support.leanMax - middle);
       if (fine && j < refine) {
         const d0 = mix(support.demand, k, share);
         const d1 = mix(support.demand, k, (j + 1) / refine);
@@ -136,7 +159,7 @@ function checkInterval(
     // the schedule's own next state must be where the motion really goes
     const scale = Math.max(support.leanMax, -support.leanMin);
     const miss = Math.abs(lean - schedule.lean[k + 1]) / scale;
-    if (!(miss <= 1e-6)) findings.note('lean', i, (k + 1) * step, Infinity, scale);
+    if (!(miss <= 1e-6)) note(findings, leanLimit, i, (k + 1) * step, Infinity, scale);
   }
 }
 
@@ -157,12 +180,15 @@ export function checkPlanLimits(
   schedules: readonly AxisSchedule[],
   refine: number,
 ): LimitFinding[] {
-  const findings = new Findings();
+  const findings: Findings = new Array(limitNames.length * problem.axes.length).fill(null);
   for (let i = 0; i < problem.axes.length; i++) {
     for (let k = 0; k < problem.intervals; k++) checkInterval(problem, schedules[i], i, k, refine, findings);
   }
-  return limitNames.flatMap((limit) =>
-    problem.axes.flatMap((_, i) => findings.worst.get(`${limit} ${i}`) ?? []),
+  return limitNames.flatMap((limit, l) =>
+    problem.axes.flatMap((_, axis) => {
+      const worst = findings[axis * limitNames.length + l];
+      return worst ? { limit, axis, ...worst } : [];
+    }),
   );
 }
 

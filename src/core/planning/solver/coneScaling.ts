@@ -122,36 +122,40 @@ export function divideCone(
 }
 
 /**
- * Greatest step a <= limit with x + a d in one second-order cone, x strictly inside.
+ * Greatest step a <= limit with x + a d1 and x + a d2 in one second-order cone, x strictly inside.
  *
- * The first positive root of a quadratic, in the form that does not cancel.
+ * With x turned to the head of the cone (a hyperbolic rotation that leaves the cone as it is), d becomes
+ * rho = (rho0, rho1) and the step is 1 / (|rho1| - rho0), without a quadratic to cancel.
+ * Source: Vandenberghe, The CVXOPT linear and quadratic cone program solvers (2010), section 8.
  */
-export function coneStep(x: Float64Array, d: Float64Array, at: number, dim: number, limit: number): number {
-  let a = d[at] * d[at];
-  let b = x[at] * d[at];
-  for (let i = 1; i < dim; i++) {
-    a -= d[at + i] * d[at + i];
-    b -= x[at + i] * d[at + i];
-  }
-  const c = hyperbolicNorm2(x, at, dim);
-  let step = limit;
-  const disc = b * b - a * c;
-  if (disc >= 0) {
-    const root = Math.sqrt(disc);
-    if (b <= 0) {
-      const first = c / (root - b);
-      if (first > 0 && first < step) step = first;
-    } else if (a < 0) {
-      const first = (-b - root) / a;
-      if (first > 0 && first < step) step = first;
+export function coneStep(
+  x: Float64Array,
+  d1: Float64Array,
+  d2: Float64Array,
+  at: number,
+  dim: number,
+  limit: number,
+): number {
+  const norm2 = hyperbolicNorm2(x, at, dim);
+  const inverse = 1 / Math.sqrt(norm2);
+  const x0 = x[at] * inverse;
+  let worst = 0;
+  for (let side = 0; side < 2; side++) {
+    const d = side === 0 ? d1 : d2;
+    let dot = 0;
+    for (let i = 1; i < dim; i++) dot += x[at + i] * d[at + i];
+    dot *= inverse;
+    const head = x0 * d[at] - dot;
+    const turn = ((head + d[at]) / (x0 + 1)) * inverse;
+    let tail = 0;
+    for (let i = 1; i < dim; i++) {
+      const v = d[at + i] - turn * x[at + i];
+      tail += v * v;
     }
+    const need = (Math.sqrt(tail) - head) * inverse;
+    if (need > worst) worst = need;
   }
-  // the cone has a second sheet below: keep the head non-negative
-  if (d[at] < 0) {
-    const head = -x[at] / d[at];
-    if (head < step) step = head;
-  }
-  return step;
+  return worst * limit > 1 ? 1 / worst : limit;
 }
 
 /** How far x is outside one second-order cone: |v| - t, negative inside. */

@@ -1,17 +1,12 @@
 import { checkCertificate } from './certificateCheck';
 import { coneExcess, scaleCones } from './coneScaling';
 import { fillCorrection, longestStep, moveCones, scaleRows, solveNewton } from './newtonStep';
+import { addRowsTransposed, multiplyRows, packRows } from './packedRows';
 import type { SolverOptions } from './solverOptions';
 import type { Certificate } from './solverOutcome';
 import type { SolverWork } from './solverWork';
 import { copyStagePoint, type StageProblem } from './stageProblem';
-import {
-  addRowsTransposed,
-  dynamicsResidual,
-  evaluateObjective,
-  multiplyRows,
-  smoothGradient,
-} from './stageProducts';
+import { dynamicsResidual, evaluateObjective, smoothGradient } from './stageProducts';
 import { factorStages, solveStages } from './stageRiccati';
 
 /** How a run of the method ended: what it claims is for others to check. */
@@ -58,14 +53,15 @@ function pushInside(work: SolverWork, x: Float64Array, margin: number): void {
  * program solvers (2010), section 5.3.
  */
 function startCold(problem: StageProblem, options: SolverOptions, work: SolverWork): boolean {
-  const { point, sizes, right, rightBorder } = work;
+  const { point, sizes, packed, right, rightBorder } = work;
   point.z.fill(0);
   point.dynamicsDual.fill(0);
   point.border.fill(0);
   for (let r = 0; r < sizes.rows; r++) work.rowRight[r] = -problem.bound[r];
   smoothGradient(problem, point, right, rightBorder);
-  addRowsTransposed(sizes, problem.rows, problem.rowsShared, work.rowRight, right, rightBorder);
-  if (!factorStages(problem, problem.rows, problem.rowsShared, options.regularise, work.factor)) return false;
+  addRowsTransposed(sizes, packed, packed.value, problem.rowsShared, work.rowRight, right, rightBorder);
+  if (!factorStages(problem, packed, packed.value, problem.rowsShared, options.regularise, work.factor))
+    return false;
   solveStages(
     problem,
     work.factor,
@@ -76,7 +72,7 @@ function startCold(problem: StageProblem, options: SolverOptions, work: SolverWo
     point.dynamicsDual,
     point.border,
   );
-  multiplyRows(sizes, problem.rows, problem.rowsShared, point.z, point.border, point.dual);
+  multiplyRows(sizes, packed, packed.value, problem.rowsShared, point.z, point.border, point.dual);
   for (let r = 0; r < sizes.rows; r++) {
     point.dual[r] -= problem.bound[r];
     point.slack[r] = -point.dual[r];
@@ -88,13 +84,21 @@ function startCold(problem: StageProblem, options: SolverOptions, work: SolverWo
 
 /** Residuals of every condition at the iterate; returns the sum of slack times dual. */
 function fillResiduals(problem: StageProblem, work: SolverWork): number {
-  const { point, sizes } = work;
+  const { point, sizes, packed } = work;
   smoothGradient(problem, point, work.gradient, work.borderGradient);
-  addRowsTransposed(sizes, problem.rows, problem.rowsShared, point.dual, work.gradient, work.borderGradient);
+  addRowsTransposed(
+    sizes,
+    packed,
+    packed.value,
+    problem.rowsShared,
+    point.dual,
+    work.gradient,
+    work.borderGradient,
+  );
   const controls = sizes.stages * sizes.width;
   for (let a = 0; a < sizes.controls; a++) work.gradient[controls + a] = 0;
   dynamicsResidual(problem, point.z, work.equations);
-  multiplyRows(sizes, problem.rows, problem.rowsShared, point.z, point.border, work.rowResidual);
+  multiplyRows(sizes, packed, packed.value, problem.rowsShared, point.z, point.border, work.rowResidual);
   let gap = 0;
   for (let r = 0; r < sizes.rows; r++) {
     work.rowResidual[r] += point.slack[r] - problem.bound[r];
@@ -136,7 +140,17 @@ function advance(problem: StageProblem, options: SolverOptions, work: SolverWork
   const { point, sizes } = work;
   if (!scaleCones(sizes, point.slack, point.dual, work.scaling)) return 0;
   scaleRows(problem, work);
-  if (!factorStages(problem, work.scaledRows, work.scaledShared, options.regularise, work.factor)) return 0;
+  if (
+    !factorStages(
+      problem,
+      work.packed,
+      work.packed.scaled,
+      work.scaledShared,
+      options.regularise,
+      work.factor,
+    )
+  )
+    return 0;
   let step = 1;
   if (sizes.degree === 0) {
     solveNewton(problem, work, 0, false);
@@ -169,6 +183,7 @@ export function runInteriorPoint(
   work: SolverWork,
 ): InteriorRun {
   const { sizes, point } = work;
+  packRows(problem, work.packed);
   if (options.warm && work.hasKept) copyStagePoint(work.kept, point);
   else if (!startCold(problem, options, work)) return { end: 'stalled', iterations: 0, certificate: null };
   let isKept = false;

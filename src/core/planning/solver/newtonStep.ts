@@ -1,52 +1,58 @@
 import { coneStep, divideCone, multiplyCone } from './coneScaling';
+import { addRowsTransposed, multiplyRows } from './packedRows';
 import type { SolverWork } from './solverWork';
 import type { StageProblem } from './stageProblem';
-import { addRowsTransposed, multiplyRows } from './stageProducts';
+
 import { solveStages } from './stageRiccati';
 
-/** scaledRows = W^-1 rows, scaledShared = W^-1 rowsShared. O(rows width). */
+/** Divides the packed rows and the shared columns by the cone scaling. O(entries), allocates nothing. */
 export function scaleRows(problem: StageProblem, work: SolverWork): void {
-  const { stages, width, shared, rowStart, linearRows, coneRow, coneDim } = problem.sizes;
+  const { stages, shared, rowStart, linearRows, coneRow, coneDim } = problem.sizes;
   const { scale, beta } = work.scaling;
+  const { start, value, scaled } = work.packed;
   for (let k = 0; k <= stages; k++) {
     const end = rowStart[k] + linearRows[k];
     for (let r = rowStart[k]; r < end; r++) {
       const inverse = 1 / scale[r];
-      for (let a = r * width; a < (r + 1) * width; a++) work.scaledRows[a] = problem.rows[a] * inverse;
+      for (let t = start[r]; t < start[r + 1]; t++) scaled[t] = value[t] * inverse;
       for (let j = r * shared; j < (r + 1) * shared; j++) {
         work.scaledShared[j] = problem.rowsShared[j] * inverse;
       }
     }
   }
   for (let c = 0; c < coneRow.length; c++) {
-    divideConeRows(scale, beta[c], coneRow[c], coneDim[c], width, problem.rows, work.scaledRows);
+    const at = coneRow[c];
+    const used = start[at + 1] - start[at];
+    divideConeRows(scale, beta[c], at, coneDim[c], used, start[at], value, scaled);
     if (shared > 0) {
-      divideConeRows(scale, beta[c], coneRow[c], coneDim[c], shared, problem.rowsShared, work.scaledShared);
+      const { rowsShared } = problem;
+      divideConeRows(scale, beta[c], at, coneDim[c], shared, at * shared, rowsShared, work.scaledShared);
     }
   }
 }
 
-/** out = W^-1 m for the rows of one cone, column by column. */
+/** out = W^-1 m for the rows of one cone, column by column; the cone's matrix starts at `from`. */
 function divideConeRows(
   scale: Float64Array,
   beta: number,
   at: number,
   dim: number,
   columns: number,
+  from: number,
   m: Float64Array,
   out: Float64Array,
 ): void {
   const w0 = scale[at];
   const inverse = 1 / beta;
-  for (let a = 0; a < columns; a++) {
-    const head = m[at * columns + a];
+  for (let a = from; a < from + columns; a++) {
+    const head = m[a];
     let dot = 0;
-    for (let i = 1; i < dim; i++) dot += scale[at + i] * m[(at + i) * columns + a];
+    for (let i = 1; i < dim; i++) dot += scale[at + i] * m[a + i * columns];
     const tail = inverse * (dot / (1 + w0) - head);
     for (let i = 1; i < dim; i++) {
-      out[(at + i) * columns + a] = inverse * m[(at + i) * columns + a] + scale[at + i] * tail;
+      out[a + i * columns] = inverse * m[a + i * columns] + scale[at + i] * tail;
     }
-    out[at * columns + a] = inverse * (w0 * head - dot);
+    out[a] = inverse * (w0 * head - dot);
   }
 }
 
@@ -160,14 +166,14 @@ export function solveNewton(
   centre: number,
   hasCorrection: boolean,
 ): void {
-  const { sizes, right, rightBorder, rowRight, stepSlack, stepDual } = work;
+  const { sizes, packed, right, rightBorder, rowRight, stepSlack, stepDual } = work;
   const { rows } = sizes;
   fillComplementarity(work, centre, hasCorrection, stepSlack);
   divideByScaling(work, work.rowResidual, rowRight);
   for (let r = 0; r < rows; r++) rowRight[r] += stepSlack[r];
   right.set(work.gradient);
   rightBorder.set(work.borderGradient);
-  addRowsTransposed(sizes, work.scaledRows, work.scaledShared, rowRight, right, rightBorder);
+  addRowsTransposed(sizes, packed, packed.scaled, work.scaledShared, rowRight, right, rightBorder);
   solveStages(
     problem,
     work.factor,
@@ -178,7 +184,7 @@ export function solveNewton(
     work.stepDynamics,
     work.stepBorder,
   );
-  multiplyRows(sizes, work.scaledRows, work.scaledShared, work.stepZ, work.stepBorder, stepDual);
+  multiplyRows(sizes, packed, packed.scaled, work.scaledShared, work.stepZ, work.stepBorder, stepDual);
   for (let r = 0; r < rows; r++) {
     stepDual[r] += rowRight[r];
     stepSlack[r] -= stepDual[r];
@@ -194,13 +200,12 @@ export function longestStep(work: SolverWork): number {
   for (let k = 0; k <= stages; k++) {
     const end = rowStart[k] + linearRows[k];
     for (let r = rowStart[k]; r < end; r++) {
-      const worst = stepSlack[r] < stepDual[r] ? stepSlack[r] : stepDual[r];
+      const worst = Math.min(stepSlack[r], stepDual[r]);
       if (worst * step < -l[r]) step = -l[r] / worst;
     }
   }
   for (let c = 0; c < coneRow.length; c++) {
-    step = coneStep(l, stepSlack, coneRow[c], coneDim[c], step);
-    step = coneStep(l, stepDual, coneRow[c], coneDim[c], step);
+    step = coneStep(l, stepSlack, stepDual, coneRow[c], coneDim[c], step);
   }
   return step;
 }

@@ -10,6 +10,13 @@ const matrixTimes = (m: Float64Array, at: number, columns: number, x: Float64Arr
   return sum;
 };
 
+/** |v| - t of a second-order cone's vector: positive outside. */
+const outside = (x: Float64Array, at: number, dim: number): number => {
+  let tail = 0;
+  for (let i = 1; i < dim; i++) tail += x[at + i] * x[at + i];
+  return Math.sqrt(tail) - x[at];
+};
+
 interface RowCheck {
   limits: number;
   dualCone: number;
@@ -22,10 +29,10 @@ function checkRows(
   point: StagePoint,
   k: number,
   z: Float64Array,
+  w: Float64Array,
   out: RowCheck,
 ): void {
   const { sizes } = problem;
-  const w = point.border.subarray(sizes.boundaryRows);
   const first = sizes.rowStart[k];
   const slack = new Float64Array(sizes.rowStart[k + 1] - first);
   for (let i = 0; i < slack.length; i++) {
@@ -43,10 +50,8 @@ function checkRows(
   for (let c = sizes.coneStart[k]; c < sizes.coneStart[k + 1]; c++) {
     const at = sizes.coneRow[c];
     const dim = sizes.coneDim[c];
-    const s = slack.subarray(at - first, at - first + dim);
-    const l = point.dual.subarray(at, at + dim);
-    out.limits = Math.max(out.limits, Math.hypot(...s.subarray(1)) - s[0]);
-    out.dualCone = Math.max(out.dualCone, Math.hypot(...l.subarray(1)) - l[0]);
+    out.limits = Math.max(out.limits, outside(slack, at - first, dim));
+    out.dualCone = Math.max(out.dualCone, outside(point.dual, at, dim));
   }
 }
 
@@ -64,6 +69,7 @@ export function checkOptimality(problem: StageProblem, point: StagePoint, object
   const { sizes } = problem;
   const { stages, states, controls, width, shared, boundaryRows } = sizes;
   const rows: RowCheck = { limits: 0, dualCone: 0, complementarity: 0 };
+  const w = point.border.subarray(boundaryRows);
   let equations = 0;
   let stationarity = 0;
   const sharedGradient = Array.from(
@@ -72,12 +78,11 @@ export function checkOptimality(problem: StageProblem, point: StagePoint, object
   );
   for (let k = 0; k <= stages; k++) {
     const z = point.z.subarray(k * width, (k + 1) * width);
-    const gradient = Float64Array.from(
-      { length: width },
-      (_, a) =>
-        problem.gradient[k * width + a] + matrixTimes(problem.hessian, (k * width + a) * width, width, z),
-    );
-    checkRows(problem, point, k, z, rows);
+    const gradient = problem.gradient.slice(k * width, (k + 1) * width);
+    for (let a = 0; a < width; a++) {
+      gradient[a] += matrixTimes(problem.hessian, (k * width + a) * width, width, z);
+    }
+    checkRows(problem, point, k, z, w, rows);
     for (let r = sizes.rowStart[k]; r < sizes.rowStart[k + 1]; r++) {
       for (let a = 0; a < width; a++) gradient[a] += problem.rows[r * width + a] * point.dual[r];
       for (let j = 0; j < shared; j++)

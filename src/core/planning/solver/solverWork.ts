@@ -1,4 +1,5 @@
 import { type ConeScaling, createConeScaling } from './coneScaling';
+import { createPackedRows, type PackedRows } from './packedRows';
 import { createStagePoint, type StagePoint, type StageProblem } from './stageProblem';
 import { createStageFactor, type StageFactor } from './stageRiccati';
 import type { StageSizes } from './stageSizes';
@@ -13,8 +14,8 @@ export interface SolverWork {
   hasKept: boolean;
   readonly scaling: ConeScaling;
   readonly factor: StageFactor;
-  /** rows x width and rows x shared: rows divided by their scaling */
-  readonly scaledRows: Float64Array;
+  readonly packed: PackedRows;
+  /** rows x shared: shared columns divided by their scaling */
   readonly scaledShared: Float64Array;
   /** gradients of the Lagrangian and residuals */
   readonly gradient: Float64Array;
@@ -46,7 +47,7 @@ export function createSolverWork(sizes: StageSizes): SolverWork {
     hasKept: false,
     scaling: createConeScaling(sizes),
     factor: createStageFactor(sizes),
-    scaledRows: new Float64Array(rows * width),
+    packed: createPackedRows(sizes),
     scaledShared: new Float64Array(rows * shared),
     gradient: new Float64Array(nodes),
     borderGradient: new Float64Array(border),

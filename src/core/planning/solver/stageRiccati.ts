@@ -1,3 +1,4 @@
+import type { PackedRows } from './packedRows';
 import type { StageProblem } from './stageProblem';
 import type { StageSizes } from './stageSizes';
 
@@ -56,7 +57,8 @@ export function createStageFactor(sizes: StageSizes): StageFactor {
 /** Adds H_k + rows' rows, and the shared columns of it, to the upper triangle of the stage block. */
 function fillBlock(
   problem: StageProblem,
-  scaledRows: Float64Array,
+  packed: PackedRows,
+  value: Float64Array,
   scaledShared: Float64Array,
   regularise: number,
   k: number,
@@ -74,13 +76,13 @@ function fillBlock(
   }
   const t = f.borderMatrix;
   const end = rowStart[k + 1];
+  const { start, local } = packed;
   for (let r = rowStart[k]; r < end; r++) {
-    const row = r * width;
-    for (let a = 0; a < width; a++) {
-      const g = scaledRows[row + a];
-      if (g === 0) continue;
-      const at = a * total;
-      for (let b = a; b < width; b++) m[at + b] += g * scaledRows[row + b];
+    const last = start[r + 1];
+    for (let i = start[r]; i < last; i++) {
+      const g = value[i];
+      const at = local[i] * total;
+      for (let j = i; j < last; j++) m[at + local[j]] += g * value[j];
       for (let j = 0; j < shared; j++) {
         m[at + width + boundaryRows + j] += g * scaledShared[r * shared + j];
       }
@@ -215,7 +217,8 @@ function factorBorder(border: number, f: StageFactor): boolean {
 /**
  * Factorises the Newton system with H_k + rows' rows on the stages.
  *
- * @param scaledRows   rows x width, inequality rows divided by their cone scaling
+ * @param packed       inequality rows
+ * @param value        their entries divided by the cone scaling
  * @param scaledShared rows x shared, the same for the shared columns
  * @param regularise   added to every stage diagonal; keeps directions without cost or limit bounded
  * @param f            factor, overwritten
@@ -225,7 +228,8 @@ function factorBorder(border: number, f: StageFactor): boolean {
  */
 export function factorStages(
   problem: StageProblem,
-  scaledRows: Float64Array,
+  packed: PackedRows,
+  value: Float64Array,
   scaledShared: Float64Array,
   regularise: number,
   f: StageFactor,
@@ -240,7 +244,7 @@ export function factorStages(
     f.borderMatrix[(boundaryRows + j) * (border + 1)] = problem.sharedHessian[j] + regularise;
   }
   for (let k = stages; k >= 0; k--) {
-    fillBlock(problem, scaledRows, scaledShared, regularise, k, f);
+    fillBlock(problem, packed, value, scaledShared, regularise, k, f);
     if (k < stages) {
       addCostToGo(problem, k, f);
     } else {
