@@ -1,0 +1,5 @@
+import type { Command } from '../command';
+import { weighCommand } from './weigh';
+
+/** Every command, in the order of the job. A new one is a file of its own and a line here. */
+export const COMMANDS: readonly Command[] = [weighCommand];

@@ -1,0 +1,38 @@
+/** Writes what is generated from the source into public/: the rig's JSON Schema and the demonstration rigs. */
+import { mkdirSync, readFileSync, writeFileSync } from 'node:fs';
+import { join } from 'node:path';
+import { toJsonSchema } from '@valibot/to-json-schema';
+import { DEMONSTRATIONS, RIG_FORMAT, RIG_VERSION, RigSchema } from '../src/core/rig';
+
+const folder = join(import.meta.dirname, '../public');
+
+/** The rig's JSON Schema, from the definition that validates it. */
+export const rigJsonSchema = (): object => ({
+  $id: `${RIG_FORMAT}.schema.json`,
+  title: 'A Tiltwright rig',
+  description: `Format "${RIG_FORMAT}", version ${RIG_VERSION}. All numbers in SI: m, kg, s, rad, N, Pa, V, A, Ω, C.`,
+  ...toJsonSchema(RigSchema, { target: 'draft-07' }),
+});
+
+export const schemaText = (): string => `${JSON.stringify(rigJsonSchema(), null, 1)}\n`;
+export const rigText = (rig: object): string => `${JSON.stringify(rig, null, 2)}\n`;
+
+/** Every generated file, by its path under public/. */
+export const generatedFiles = (): readonly (readonly [path: string, text: string])[] => [
+  [`${RIG_FORMAT}.schema.json`, schemaText()],
+  ...DEMONSTRATIONS.map(({ file, rig }) => [`rigs/${file}`, rigText(rig)] as const),
+];
+
+if (process.argv[1]?.endsWith('writeSchemas.ts')) {
+  mkdirSync(join(folder, 'rigs'), { recursive: true });
+  for (const [path, text] of generatedFiles()) {
+    const file = join(folder, path);
+    let before = '';
+    try {
+      before = readFileSync(file, 'utf8');
+    } catch {
+      // Not there yet.
+    }
+    if (before !== text) writeFileSync(file, text);
+  }
+}
