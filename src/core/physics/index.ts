@@ -1,6 +1,7 @@
 export * from './arrayLaw';
 export * from './compile';
 export * from './conserved';
+export * from './discStress';
 export * from './floatCompile';
 export * from './footing';
 export * from './footingFloat';
@@ -20,4 +21,6 @@ export * from './spatial';
 export * from './starDynamics';
 export * from './starModel';
 export * from './weigh';
+export * from './wheelBurst';
 export * from './wheelProperties';
+export * from './wheelStress';
