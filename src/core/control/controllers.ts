@@ -87,7 +87,7 @@ export function resetController(work: ControllerWork, tilt: number): void {
  *
  * @param lean,leanRate estimate, rad and rad/s
  * @param momentum N*m*s of a reaction wheel, else unused
- * @param tiltLimit rad; the command stops there and nothing winds up behind it
+ * @param tiltMin,tiltMax rad; the command stops there and nothing winds up behind it
  * @param dt s, nominal time between ticks
  *
  * O(1), allocates nothing.
@@ -98,7 +98,8 @@ export function stepController(
   lean: number,
   leanRate: number,
   momentum: number,
-  tiltLimit: number,
+  tiltMin: number,
+  tiltMax: number,
   dt: number,
 ): number {
   const s = work.state;
@@ -106,12 +107,10 @@ export function stepController(
     case 'pidTilt': {
       const before = s[C.gathered]!;
       s[C.gathered] = before + lean * dt;
-      let command = c.kp * lean + c.ki * s[C.gathered]! + c.kd * leanRate;
-      if (command > tiltLimit || command < -tiltLimit) {
-        /* Stop gathering while it would push further past the limit. */
-        if (command * c.ki * lean > 0) s[C.gathered] = before;
-        command = command > 0 ? tiltLimit : -tiltLimit;
-      }
+      const asked = c.kp * lean + c.ki * s[C.gathered]! + c.kd * leanRate;
+      const command = Math.min(Math.max(asked, tiltMin), tiltMax);
+      /* Stop gathering while it would push further past the limit. */
+      if ((asked - command) * c.ki * lean > 0) s[C.gathered] = before;
       s[C.command] = command;
       return command;
     }
@@ -119,15 +118,16 @@ export function stepController(
       const before = s[C.gathered]!;
       s[C.gathered] = before + lean * dt;
       s[C.rate] = c.kp * lean + c.ki * s[C.gathered]! + c.kd * leanRate;
-      const command = s[C.command]! + s[C.rate]! * dt;
-      s[C.command] = command > tiltLimit ? tiltLimit : Math.max(command, -tiltLimit);
-      if (command !== s[C.command] && s[C.rate]! * c.ki * lean > 0) s[C.gathered] = before;
-      return s[C.command]!;
+      const asked = s[C.command]! + s[C.rate]! * dt;
+      const command = Math.min(Math.max(asked, tiltMin), tiltMax);
+      if ((asked - command) * c.ki * lean > 0) s[C.gathered] = before;
+      s[C.command] = command;
+      return command;
     }
     case 'feedback':
-      return stepFeedback(c, s, lean, leanRate, 1, 1, 1, tiltLimit, dt);
+      return stepFeedback(c, s, lean, leanRate, 1, 1, 1, tiltMin, tiltMax, dt);
     case 'planned':
-      return stepPlanned(c, s, lean, leanRate, tiltLimit, dt);
+      return stepPlanned(c, s, lean, leanRate, tiltMin, tiltMax, dt);
     case 'passive':
       return s[C.command]!;
     case 'reactionWheel':
@@ -143,7 +143,8 @@ function stepFeedback(
   leanFactor: number,
   rateFactor: number,
   tiltFactor: number,
-  tiltLimit: number,
+  tiltMin: number,
+  tiltMax: number,
   dt: number,
 ): number {
   const rate =
@@ -153,7 +154,7 @@ function stepFeedback(
     g.tiltRate * s[C.rate]!;
   s[C.rate] = rate;
   const command = s[C.command]! + rate * dt;
-  const held = command > tiltLimit ? tiltLimit : Math.max(command, -tiltLimit);
+  const held = Math.min(Math.max(command, tiltMin), tiltMax);
   s[C.command] = held;
   if (held === command) s[C.tiltGathered]! += held * dt;
   else s[C.rate] = 0;
@@ -178,7 +179,8 @@ function stepPlanned(
   s: Float64Array,
   lean: number,
   leanRate: number,
-  tiltLimit: number,
+  tiltMin: number,
+  tiltMax: number,
   dt: number,
 ): number {
   const plan = c.plan;
@@ -199,7 +201,6 @@ function stepPlanned(
   const awry = lean - readColumn(plan.lean, place, plan.isCyclic);
   const awryRate = leanRate - readColumn(plan.leanRate, place, plan.isCyclic);
   /* The feedback's own tilt is what it adds to the plan, so re-centring means returning to the plan. */
-  const room = tiltLimit - Math.abs(planned);
   const added = stepFeedback(
     c.gains,
     s,
@@ -208,7 +209,8 @@ function stepPlanned(
     leanFactor,
     rateFactor,
     tiltFactor,
-    Math.max(room, 0),
+    tiltMin - planned,
+    tiltMax - planned,
     dt,
   );
   return planned + added;

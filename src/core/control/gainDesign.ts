@@ -56,10 +56,13 @@ interface Corner {
   readonly scale: number;
 }
 
-/** 1/s asked for when nothing is said: a quarter of the toppling rate, or 0.3 of a float's roll frequency. */
-export function chooseLeastDecay(plant: RollTiltPlant): number {
+/**
+ * 1/s asked for when nothing is said: a quarter of the toppling rate, or 0.3 of a float's roll frequency. A trim term is slow
+ * by nature and gets half of that: asked for more, it eats the margin.
+ */
+export function chooseLeastDecay(plant: RollTiltPlant, hasTrim = false): number {
   const rate = Math.sqrt(Math.abs(plant.stiffness) / plant.inertia);
-  return (plant.stiffness > 0 ? 0.25 : 0.3) * rate;
+  return (plant.stiffness > 0 ? 0.25 : 0.3) * (hasTrim ? 0.5 : 1) * rate;
 }
 
 /**
@@ -75,8 +78,9 @@ export function designGains(request: DesignRequest): DesignOutcome {
   const spread = request.spread ?? USUAL_SPREAD;
   const topplingRate = plant.stiffness / plant.inertia;
   const delayLimit = topplingRate > 0 ? limitDelaySecondOrder(topplingRate) : Number.POSITIVE_INFINITY;
-  const leastDecay = request.leastDecay ?? chooseLeastDecay(plant);
-  if (!(leastDecay > 0)) return { kind: 'impossible', reason: 'neutral-body', holdsNominally: false, delayLimit };
+  const leastDecay = request.leastDecay ?? chooseLeastDecay(plant, request.hasTrim === true);
+  if (!(leastDecay > 0))
+    return { kind: 'impossible', reason: 'neutral-body', holdsNominally: false, delayLimit };
 
   const nominal = createLoopScorer(plant, estimator, law, leastDecay);
   const late = { ...plant, delay: plant.delay * (1 + spread.delay) };
@@ -107,7 +111,8 @@ export function designGains(request: DesignRequest): DesignOutcome {
       start = candidate;
     }
   }
-  if (start === undefined) return { kind: 'impossible', reason: 'neutral-body', holdsNominally: false, delayLimit };
+  if (start === undefined)
+    return { kind: 'impossible', reason: 'neutral-body', holdsNominally: false, delayLimit };
   const signs = start.map(Math.sign);
   const active = [...start.keys()].filter((i) => start[i] !== 0);
   const spell = (x: Float64Array): Float64Array => {

@@ -1,6 +1,13 @@
 import type { EstimatorModel } from './estimators';
 import { findEigenvalues } from './linear/spectrum';
-import { createLoopBasis, evaluateLoopGain, type Law, type LoopBasis, type LoopParts, prepareLoop } from './loopModel';
+import {
+  createLoopBasis,
+  evaluateLoopGain,
+  type Law,
+  type LoopBasis,
+  type LoopParts,
+  prepareLoop,
+} from './loopModel';
 import type { RollTiltPlant } from './plantModels';
 
 /**

@@ -1,3 +1,5 @@
+import type { Servo } from '../rig';
+
 /**
  * A position servo that turns one gimbal (or one geared pair): command delay, its own update rate,
  * resolution, dead band, first-order lag, speed-torque line, current limit and backlash.
@@ -30,8 +32,9 @@ export interface ServoModel {
   readonly gimbalInertia: number;
   /** kg*m^2 of motor and gear train as felt at the output */
   readonly rotorInertia: number;
-  /** rad, hard stops at plus and minus this */
-  readonly tiltLimit: number;
+  /** rad, hard stops */
+  readonly tiltMin: number;
+  readonly tiltMax: number;
 }
 
 /** Where each quantity stands in `ServoWork.state`. */
@@ -74,7 +77,8 @@ export interface ServoWork {
 
 /** The only allocation: room for every command that can be under way at the given command rate. */
 export function createServoWork(model: ServoModel, commandRate: number, extraDelay = 0): ServoWork {
-  const waiting = Math.ceil((model.delay + extraDelay) * commandRate) + 4;
+  const frame = model.updateRate > 0 ? 1 / model.updateRate : 0;
+  const waiting = Math.ceil((model.delay + extraDelay + frame) * commandRate) + 4;
   const work = {
     state: new Float64Array(STATE_LENGTH),
     queue: new Float64Array(waiting),
@@ -115,8 +119,11 @@ export function sendCommand(model: ServoModel, work: ServoWork, command: number,
   work.cursor[1] = count + 1;
 }
 
-/* Mean over [time, time + dt] of the command in force. A continuous reader sees fractions of a step exactly. */
-function readCommand(model: ServoModel, work: ServoWork, dt: number): number {
+/**
+ * Mean over the coming step of the command in force, delay and update rate seen to; the clock is moved on by the
+ * caller. A servo that reads continuously sees fractions of a step exactly.
+ */
+export function readCommand(model: ServoModel, work: ServoWork, dt: number): number {
   const s = work.state;
   const size = work.queue.length;
   const start = s[SERVO_STATE.time]!;
@@ -131,7 +138,7 @@ function readCommand(model: ServoModel, work: ServoWork, dt: number): number {
     while (readAt < end) {
       mean += held * (readAt - from);
       from = readAt;
-      while (work.cursor[1]! > 0 && work.release[work.cursor[0]!]! <= readAt + 1e-12) {
+      while (work.cursor[1]! > 0 && work.release[work.cursor[0]!]! <= readAt + 1e-9) {
         held = work.queue[work.cursor[0]!]!;
         work.cursor[0] = (work.cursor[0]! + 1) % size;
         work.cursor[1]! -= 1;
@@ -140,7 +147,7 @@ function readCommand(model: ServoModel, work: ServoWork, dt: number): number {
     }
     s[SERVO_STATE.untilRead] = readAt - end;
   } else {
-    while (work.cursor[1]! > 0 && work.release[work.cursor[0]!]! < end - 1e-12) {
+    while (work.cursor[1]! > 0 && work.release[work.cursor[0]!]! < end - 1e-9) {
       const due = Math.max(work.release[work.cursor[0]!]!, from);
       mean += held * (due - from);
       from = due;
@@ -169,8 +176,7 @@ export function stepServo(model: ServoModel, work: ServoWork, gimbalLoad: number
   const s = work.state;
   let target = readCommand(model, work, dt);
   if (model.resolution > 0) target = Math.round(target / model.resolution) * model.resolution;
-  if (target > model.tiltLimit) target = model.tiltLimit;
-  else if (target < -model.tiltLimit) target = -model.tiltLimit;
+  target = Math.min(Math.max(target, model.tiltMin), model.tiltMax);
 
   const error = target - s[SERVO_STATE.motor]!;
   const ignores = model.deadBand > 0 && Math.abs(error) < model.deadBand;
@@ -271,13 +277,14 @@ function stepWithPlay(model: ServoModel, s: Float64Array, load: number, wanted: 
 /* Hard stops take any load; the motor does not pay for it. */
 function holdAtStop(model: ServoModel, s: Float64Array): void {
   const tilt = s[SERVO_STATE.tilt]!;
-  if (tilt <= model.tiltLimit && tilt >= -model.tiltLimit) return;
-  const side = tilt > 0 ? 1 : -1;
-  s[SERVO_STATE.tilt] = side * model.tiltLimit;
+  if (tilt <= model.tiltMax && tilt >= model.tiltMin) return;
+  const side = tilt > model.tiltMax ? 1 : -1;
+  const stop = side > 0 ? model.tiltMax : model.tiltMin;
+  s[SERVO_STATE.tilt] = stop;
   if (side * s[SERVO_STATE.rate]! > 0) s[SERVO_STATE.rate] = 0;
-  const reach = model.tiltLimit + 0.5 * model.backlash;
-  if (side * s[SERVO_STATE.motor]! > reach) {
-    s[SERVO_STATE.motor] = side * reach;
+  const reach = stop + side * 0.5 * model.backlash;
+  if (side * (s[SERVO_STATE.motor]! - reach) > 0) {
+    s[SERVO_STATE.motor] = reach;
     if (side * s[SERVO_STATE.motorRate]! > 0) s[SERVO_STATE.motorRate] = 0;
   }
 }
@@ -292,6 +299,40 @@ export function meanServoTorque(work: ServoWork): number {
  * s of delay and s of lag by which a linear loop feels this servo: its delay, plus half the time between
  * two of its own frames (a frame waits from 0 to 1/rate; the mean is half).
  */
-export function summariseServo(model: ServoModel): { readonly delay: number; readonly lag: number } {
-  return { delay: model.delay + (model.updateRate > 0 ? 0.5 / model.updateRate : 0), lag: model.lag };
+export function summariseServo(servo: Pick<Servo, 'delay' | 'lag' | 'updateRate'>): {
+  readonly delay: number;
+  readonly lag: number;
+} {
+  return { delay: servo.delay + (servo.updateRate > 0 ? 0.5 / servo.updateRate : 0), lag: servo.lag };
+}
+
+/** What a servo's data sheet leaves out. */
+export interface ServoMounting {
+  /** kg*m^2 of everything the servo turns, about the gimbal axis */
+  readonly gimbalInertia: number;
+  /** kg*m^2 of motor and gears at the output */
+  readonly rotorInertia?: number;
+  readonly tiltMin: number;
+  readonly tiltMax: number;
+  /** N*m; the stall torque when left out */
+  readonly torqueLimit?: number;
+}
+
+/** A rig's servo on its gimbal. */
+export function mountServo(servo: Servo, mounting: ServoMounting): ServoModel {
+  return {
+    stallTorque: servo.stallTorque,
+    noLoadSpeed: servo.noLoadSpeed,
+    torqueLimit: Math.min(mounting.torqueLimit ?? servo.stallTorque, servo.stallTorque),
+    delay: servo.delay,
+    lag: servo.lag,
+    backlash: servo.backlash,
+    deadBand: servo.deadBand,
+    resolution: servo.resolution,
+    updateRate: servo.updateRate,
+    gimbalInertia: mounting.gimbalInertia,
+    rotorInertia: mounting.rotorInertia ?? 0,
+    tiltMin: mounting.tiltMin,
+    tiltMax: mounting.tiltMax,
+  };
 }
