@@ -1,0 +1,156 @@
+/** The ground the feet enclose: its outline, how far the centre of pressure may go along a line, and what friction holds. */
+
+/** Corners of a convex outline, anticlockwise from above, x y packed; m. Empty when no foot is down. */
+export type Polygon = Float64Array;
+
+/**
+ * Convex hull of points in the plane.
+ *
+ * @param points  x y packed, m
+ * @returns corners anticlockwise, none on a straight line between its neighbours; fewer than three when the points are in line
+ *
+ * O(n log n). Source: Andrew, Another efficient algorithm for convex hulls in two dimensions, Information
+ * Processing Letters 9 (1979).
+ */
+export function convexHull(points: ArrayLike<number>): Polygon {
+  const count = points.length / 2;
+  const order = Array.from({ length: count }, (_, i) => i).sort(
+    (a, b) =>
+      (points[2 * a] as number) - (points[2 * b] as number) ||
+      (points[2 * a + 1] as number) - (points[2 * b + 1] as number),
+  );
+  const chain: number[] = [];
+  const addChain = (indices: readonly number[]): void => {
+    const base = chain.length;
+    for (const i of indices) {
+      while (
+        chain.length - base >= 2 &&
+        !turnsLeft(points, chain.at(-2) as number, chain.at(-1) as number, i)
+      ) {
+        chain.pop();
+      }
+      chain.push(i);
+    }
+    chain.pop();
+  };
+  addChain(order);
+  addChain(order.toReversed());
+  const corners = count === 1 ? order : chain;
+  const out = new Float64Array(2 * corners.length);
+  corners.forEach((corner, i) => {
+    out[2 * i] = points[2 * corner] as number;
+    out[2 * i + 1] = points[2 * corner + 1] as number;
+  });
+  return out;
+}
+
+function turnsLeft(points: ArrayLike<number>, a: number, b: number, c: number): boolean {
+  const ax = points[2 * a] as number;
+  const ay = points[2 * a + 1] as number;
+  const bx = (points[2 * b] as number) - ax;
+  const by = (points[2 * b + 1] as number) - ay;
+  const cx = (points[2 * c] as number) - ax;
+  const cy = (points[2 * c + 1] as number) - ay;
+  return bx * cy - by * cx > 1e-14;
+}
+
+/**
+ * Outline of the ground under rectangular feet that point along x.
+ *
+ * @param centres  x y packed, m, middle of each sole that is down
+ */
+export function supportPolygon(centres: ArrayLike<number>, footLength: number, footWidth: number): Polygon {
+  const feet = centres.length / 2;
+  const corners = new Float64Array(8 * feet);
+  for (let foot = 0; foot < feet; foot++) {
+    for (let corner = 0; corner < 4; corner++) {
+      corners[8 * foot + 2 * corner] = (centres[2 * foot] as number) + (corner < 2 ? 0.5 : -0.5) * footLength;
+      corners[8 * foot + 2 * corner + 1] =
+        (centres[2 * foot + 1] as number) + (corner % 2 === 0 ? 0.5 : -0.5) * footWidth;
+    }
+  }
+  return convexHull(corners);
+}
+
+/** Axis index: 0 along (x), 1 across (y). */
+export type GroundAxis = 0 | 1;
+
+/** Least and greatest coordinate of an outline along an axis, m; undefined for an empty one. */
+export function extentOf(polygon: Polygon, axis: GroundAxis): readonly [number, number] | undefined {
+  let least = Infinity;
+  let greatest = -Infinity;
+  for (let i = axis; i < polygon.length; i += 2) {
+    least = Math.min(least, polygon[i] as number);
+    greatest = Math.max(greatest, polygon[i] as number);
+  }
+  return least <= greatest ? [least, greatest] : undefined;
+}
+
+/**
+ * Stretch of a line across an outline in which the centre of pressure keeps a margin from every edge.
+ *
+ * @param axis    the axis the stretch runs along
+ * @param at      m, where the line crosses the other axis
+ * @param margin  m, distance kept from each edge
+ * @returns ends of the stretch, m; undefined when none of the line keeps the margin
+ *
+ * O(corners).
+ */
+export function pressureInterval(
+  polygon: Polygon,
+  axis: GroundAxis,
+  at: number,
+  margin: number,
+): readonly [number, number] | undefined {
+  const count = polygon.length / 2;
+  if (count < 3) return undefined;
+  const other = 1 - axis;
+  let least = -Infinity;
+  let greatest = Infinity;
+  for (let i = 0; i < count; i++) {
+    const j = (i + 1) % count;
+    const dx = (polygon[2 * j] as number) - (polygon[2 * i] as number);
+    const dy = (polygon[2 * j + 1] as number) - (polygon[2 * i + 1] as number);
+    const length = Math.sqrt(dx * dx + dy * dy);
+    // Outward normal of an edge walked anticlockwise.
+    const normal = [dy / length, -dx / length] as const;
+    const reach =
+      normal[0] * (polygon[2 * i] as number) +
+      normal[1] * (polygon[2 * i + 1] as number) -
+      margin -
+      (normal[other] as number) * at;
+    const slope = normal[axis];
+    if (slope > 1e-12) greatest = Math.min(greatest, reach / slope);
+    else if (slope < -1e-12) least = Math.max(least, reach / slope);
+    else if (reach < -1e-12) return undefined;
+  }
+  return least <= greatest ? [least, greatest] : undefined;
+}
+
+/** Mean distance of the soles' area from its own middle, m: the arm on which friction resists turning. Pressure taken as even. */
+export function turningArm(centres: ArrayLike<number>, footLength: number, footWidth: number): number {
+  const feet = centres.length / 2;
+  if (feet === 0) return 0;
+  let middleX = 0;
+  let middleY = 0;
+  for (let foot = 0; foot < feet; foot++) {
+    middleX += (centres[2 * foot] as number) / feet;
+    middleY += (centres[2 * foot + 1] as number) / feet;
+  }
+  let sum = 0;
+  for (let foot = 0; foot < feet; foot++) {
+    const x = (centres[2 * foot] as number) - middleX;
+    const y = (centres[2 * foot + 1] as number) - middleY;
+    for (let i = 0; i < SOLE_GRID; i++) {
+      const dx = x + ((i + 0.5) / SOLE_GRID - 0.5) * footLength;
+      for (let j = 0; j < SOLE_GRID; j++) {
+        const dy = y + ((j + 0.5) / SOLE_GRID - 0.5) * footWidth;
+        sum += Math.sqrt(dx * dx + dy * dy);
+      }
+    }
+  }
+  return sum / (feet * SOLE_GRID * SOLE_GRID);
+}
+
+/** Points along each side of a sole over which the arm is averaged; the mean is within 0.5 % of the integral. */
+const SOLE_GRID = 8;

@@ -1,0 +1,160 @@
+/** Waves under a small hull by the theory of effective slope: regular trains and seeded seas, as surface, slope and roll moment. */
+import { createRandom, drawUniform } from '../control';
+import { STANDARD_GRAVITY } from '../physics';
+import type { Disturbance } from '../rig';
+
+/** What of a hull the waves act on. */
+export interface WaveBody {
+  /** N*m/rad: weight times metacentric height. */
+  readonly stiffness: number;
+  /** m, at the waterline. */
+  readonly beam: number;
+  /** m */
+  readonly draught: number;
+}
+
+/** Sinusoids that make up a sea at the moving hull. All arrays one entry a component. */
+export interface WaveTrain {
+  readonly components: number;
+  /** m */
+  readonly amplitude: Float64Array;
+  /** rad/s as a fixed observer and as the hull meets them (negative: it overtakes the wave). */
+  readonly frequency: Float64Array;
+  readonly encounter: Float64Array;
+  /** rad/m */
+  readonly wavenumber: Float64Array;
+  /** rad */
+  readonly phase: Float64Array;
+  /** rad: 0 following, 90 degrees from the right, 180 degrees head sea. */
+  readonly heading: number;
+}
+
+export type Waves = Extract<Disturbance, { kind: 'waves' | 'sea' }>;
+
+/** Wave number of deep water, rad/m: w^2 / g. Source: Airy. */
+export const deepWaterWavenumber = (frequency: number): number => (frequency * frequency) / STANDARD_GRAVITY;
+
+/**
+ * Frequency at which a moving hull meets a deep-water wave, rad/s: w - w^2 V cos(heading) / g.
+ *
+ * @param heading  rad, 0 following sea, pi head sea
+ *
+ * Source: Lloyd, Seakeeping (1989).
+ */
+export const encounterFrequency = (
+  frequency: number,
+  speed: number,
+  heading: number,
+  gravity: number = STANDARD_GRAVITY,
+): number => frequency - (frequency * frequency * speed * Math.cos(heading)) / gravity;
+
+/**
+ * Share of the wave's slope that a hull answers to: the slope averaged over its beam, at half its draught.
+ *
+ * @param wavenumber  rad/m
+ * @param heading     rad
+ *
+ * Source: Froude and Krylov's hypothesis (the wave is as if the hull were not there), for a box section.
+ */
+export function effectiveSlopeShare(body: WaveBody, wavenumber: number, heading: number): number {
+  const across = (wavenumber * body.beam * Math.abs(Math.sin(heading))) / 2;
+  const average = across < 1e-4 ? 1 - (across * across) / 6 : Math.sin(across) / across;
+  return Math.exp((-wavenumber * body.draught) / 2) * average;
+}
+
+/** Components of a sea, between these multiples of the peak frequency, in steps of equal ratio. */
+const COMPONENTS = 160;
+const LOWEST = 0.5;
+const HIGHEST = 6;
+
+/** Peak enhancement of a mean JONSWAP spectrum. Source: Hasselmann et al., Deutsche Hydrographische Zeitschrift A8 (1973). */
+const PEAK_ENHANCEMENT = 3.3;
+
+/** Shape of a spectrum over frequency, of any height: Bretschneider's, times JONSWAP's peak where asked. */
+function spectrumShape(kind: 'bretschneider' | 'jonswap', frequency: number, peak: number): number {
+  const ratio = peak / frequency;
+  const base = frequency ** -5 * Math.exp(-1.25 * ratio ** 4);
+  if (kind === 'bretschneider') return base;
+  const width = frequency <= peak ? 0.07 : 0.09;
+  const off = (frequency - peak) / (width * peak);
+  return base * PEAK_ENHANCEMENT ** Math.exp(-0.5 * off * off);
+}
+
+/**
+ * The sinusoids of a wave disturbance. A sea takes random frequencies within bands of equal ratio from half to
+ * six times the peak and random phases, all from its seed, and its amplitudes are scaled to the significant
+ * height asked, Hs = 4 sqrt(sum a^2 / 2). Slopes of shorter waves are left out; a hull averages them away.
+ */
+export function createWaveTrain(waves: Waves): WaveTrain {
+  if (waves.kind === 'waves') {
+    const frequency = (2 * Math.PI) / waves.period;
+    return {
+      components: 1,
+      amplitude: Float64Array.of(waves.height / 2),
+      frequency: Float64Array.of(frequency),
+      encounter: Float64Array.of(frequency),
+      wavenumber: Float64Array.of(deepWaterWavenumber(frequency)),
+      phase: Float64Array.of(0),
+      heading: waves.heading,
+    };
+  }
+  const random = createRandom(waves.seed);
+  const peak = (2 * Math.PI) / waves.peakPeriod;
+  const frequency = new Float64Array(COMPONENTS);
+  const amplitude = new Float64Array(COMPONENTS);
+  const phase = new Float64Array(COMPONENTS);
+  const ratio = (HIGHEST / LOWEST) ** (1 / COMPONENTS);
+  let energy = 0;
+  for (let i = 0; i < COMPONENTS; i++) {
+    const low = LOWEST * peak * ratio ** i;
+    const w = low * ratio ** drawUniform(random);
+    frequency[i] = w;
+    phase[i] = 2 * Math.PI * drawUniform(random);
+    amplitude[i] = Math.sqrt(2 * spectrumShape(waves.spectrum, w, peak) * low * (ratio - 1));
+    energy += amplitude[i] ** 2 / 2;
+  }
+  const scale = energy > 0 ? waves.significantHeight / (4 * Math.sqrt(energy)) : 0;
+  for (let i = 0; i < COMPONENTS; i++) amplitude[i] *= scale;
+  return {
+    components: COMPONENTS,
+    amplitude,
+    frequency,
+    encounter: frequency.map((w) => encounterFrequency(w, waves.speed, waves.heading)),
+    wavenumber: frequency.map(deepWaterWavenumber),
+    phase,
+    heading: waves.heading,
+  };
+}
+
+/** Height of the water at the hull's middle, m, `time` s into the train. O(components). */
+export function waveElevationAt(train: WaveTrain, time: number): number {
+  let sum = 0;
+  for (let i = 0; i < train.components; i++) {
+    sum += train.amplitude[i] * Math.cos(train.encounter[i] * time - train.phase[i]);
+  }
+  return sum;
+}
+
+/** Slope of the water across the hull, rad, positive where it rises to the left. O(components). */
+export function waveSlopeAt(train: WaveTrain, time: number): number {
+  let sum = 0;
+  for (let i = 0; i < train.components; i++) {
+    sum += train.wavenumber[i] * train.amplitude[i] * Math.sin(train.encounter[i] * time - train.phase[i]);
+  }
+  return Math.sin(train.heading) * sum;
+}
+
+/**
+ * Roll moment of the waves on an upright hull, N*m: weight x metacentric height x effective slope.
+ *
+ * O(components). Source: effective-slope theory, Lloyd, Seakeeping (1989).
+ */
+export function waveMomentAt(train: WaveTrain, body: WaveBody, time: number): number {
+  let sum = 0;
+  for (let i = 0; i < train.components; i++) {
+    const k = train.wavenumber[i];
+    const share = effectiveSlopeShare(body, k, train.heading);
+    sum += share * k * train.amplitude[i] * Math.sin(train.encounter[i] * time - train.phase[i]);
+  }
+  return body.stiffness * Math.sin(train.heading) * sum;
+}
