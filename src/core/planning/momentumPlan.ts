@@ -36,7 +36,7 @@ export const defaultPlanOptions: PlanOptions = Object.freeze({
   solver: { ...defaultSolverOptions, warm: true },
   refine: 5,
   limitTolerance: 1e-7,
-  servoPasses: 6,
+  servoPasses: 8,
 });
 
 /** One stage program and its solver, kept for the next plan of the same shape. */
@@ -132,10 +132,18 @@ function scheduleAxis(
   return out;
 }
 
-function passOf(layout: PlanLayout, axes: readonly AxisSchedule[]): PreviousPass {
+function passOf(
+  problem: MomentumPlanProblem,
+  layout: PlanLayout,
+  axes: readonly AxisSchedule[],
+): PreviousPass {
+  const isCyclic = problem.ends.kind === 'cyclic';
+  const control = axes.map((a, i) => a.torque.map((v) => -v / layout.axes[i].torqueScale));
   return {
     momentum: axes.map((a, i) => a.momentum.map((v) => v / layout.axes[i].momentumScale)),
-    control: axes.map((a, i) => a.torque.map((v) => -v / layout.axes[i].torqueScale)),
+    control,
+    before: control.map((c) => c.map((_, k) => (k > 0 ? c[k - 1] : isCyclic ? c[problem.intervals - 1] : 0))),
+    leanRate: axes.map((a) => a.leanRate),
   };
 }
 
@@ -143,6 +151,25 @@ const worstServo = (limits: readonly LimitFinding[], axis: number): number => {
   const found = limits.find((f) => f.limit === 'servo torque' && f.axis === axis);
   return found ? found.ask / found.have : 0;
 };
+
+/** Share of a servo's torque that its rows may use, and what the share before came to. */
+interface Tightening {
+  share: number;
+  lastShare: number;
+  lastUsed: number;
+}
+
+/** Least share of the torque limit that the passes go down to. */
+const leastShare = 0.3;
+
+/** Moves the share by the secant through the last two passes so that the torque used becomes the limit. */
+function tighten(t: Tightening, used: number): void {
+  if (used <= 1 + 1e-9) return;
+  const slope = t.share < t.lastShare ? (t.lastUsed - used) / (t.lastShare - t.share) : 1;
+  t.lastShare = t.share;
+  t.lastUsed = used;
+  t.share = Math.max(leastShare, t.share - (used - 1 + 1e-7) / Math.min(1, Math.max(0.2, slope)));
+}
 
 /**
  * Makes one plan, with passes over the servo torque until its true value keeps its limit.
@@ -154,12 +181,13 @@ export function attemptPlan(problem: MomentumPlanProblem, options: PlanOptions, 
   requirePlanProblem(problem);
   const { layout, problem: program, solver } = openSlot(problem, 'plan', work);
   const hasServo = problem.axes.some(({ array }) => array.servo !== null);
-  const tightening = problem.axes.map(() => 1);
+  const tightenings: Tightening[] = problem.axes.map(() => ({ share: 1, lastShare: 1, lastUsed: 1 }));
   let previous: PreviousPass | null = null;
   let iterations = 0;
   let residuals: Residuals | null = null;
   for (let pass = 0; pass < (hasServo ? options.servoPasses : 1); pass++) {
-    const constant = assemblePlan(problem, layout, previous, tightening, program);
+    const shares = tightenings.map(({ share }) => share);
+    const constant = assemblePlan(problem, layout, previous, shares, program);
     const outcome = solveStageProblem(program, options.solver, solver);
     iterations += outcome.iterations;
     if (outcome.kind !== 'solved') return { ...outcome, iterations };
@@ -170,14 +198,9 @@ export function attemptPlan(problem: MomentumPlanProblem, options: PlanOptions, 
       const objective = (outcome.objective + constant) / problem.intervals;
       return { kind: 'planned', axes, objective, residuals, limits, iterations };
     }
-    previous = passOf(layout, axes);
-    // the linearisation settles on its own in a pass or two; what is left after that is taken off the limit
-    if (pass > 0) {
-      for (let i = 0; i < tightening.length; i++) {
-        const used = worstServo(limits, i);
-        if (used > 1) tightening[i] *= (1 - 1e-6) / used;
-      }
-    }
+    previous = passOf(problem, layout, axes);
+    // what the rows at the nodes cannot see of the torque between them is taken off their limit
+    if (pass > 0) for (const t of tightenings) tighten(t, worstServo(limits, tightenings.indexOf(t)));
   }
   return { kind: 'gave-up', residuals: residuals as Residuals, iterations };
 }

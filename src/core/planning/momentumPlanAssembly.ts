@@ -3,12 +3,15 @@ import { type AxisLayout, countRows, type PlanLayout } from './momentumPlanLayou
 import type { FirmSupport, LeanSupport, MomentumPlanProblem } from './momentumPlanProblem';
 import type { StageProblem } from './solver';
 
-/** The pass before, about which the servo rows are linearised: scaled momentum and control, per axis. */
+/** The pass before, about which the servo rows are linearised; each is axes x (N + 1). */
 export interface PreviousPass {
-  /** axes x (N + 1) */
+  /** over the momentum scale: sine of the tilt */
   readonly momentum: readonly Float64Array[];
-  /** axes x (N + 1), the control of the interval that starts at the node */
+  /** over the torque scale: controls of the intervals that start and that end at the node */
   readonly control: readonly Float64Array[];
+  readonly before: readonly Float64Array[];
+  /** rad/s */
+  readonly leanRate: readonly Float64Array[];
 }
 
 /** An interval of support narrower than this share of the torque scale fixes the torque. */
@@ -227,8 +230,10 @@ function writePressureRows(
 }
 
 /**
- * Servo torque at node k, linearised about the pass before, over its limit:
- * gimbals (J tilt'' + h body rate cos(tilt)) with tilt'' = (jump of torque over step) / (E cos) + rate^2 tan.
+ * Servo torque at node k over its limit, to first order about the pass before. With s = sin(tilt), c = cos
+ * and K = torque scale over momentum scale, one servo bears
+ *
+ *   gimbals ( J ( K (control - previous) / (c step) + K^2 control^2 s / c^3 ) + h (body rate + lean rate) c ).
  */
 function writeServoRows(
   problem: MomentumPlanProblem,
@@ -238,25 +243,37 @@ function writeServoRows(
   control: ControlForm,
   i: number,
   k: number,
-  previous: PreviousPass | null,
+  pass: PreviousPass | null,
   tightening: number,
 ): void {
   const { array, bodyRate } = problem.axes[i];
   const servo = array.servo;
   if (!servo) return;
-  const sine = previous ? previous.momentum[i][k] : 0;
-  const share = previous ? previous.control[i][k] : 0;
-  const cosine = array.kind === 'gimballed' ? Math.sqrt(Math.max(1e-6, 1 - sine * sine)) : 1;
+  const isTilting = array.kind === 'gimballed';
+  const s = isTilting && pass ? Math.max(-0.999, Math.min(0.999, pass.momentum[i][k])) : 0;
+  const c = Math.sqrt(1 - s * s);
+  const now = isTilting && pass ? pass.control[i][k] : 0;
+  const before = isTilting && pass ? pass.before[i][k] : 0;
+  const leanRate = isTilting && pass ? pass.leanRate[i][k] : 0;
   const unit = servo.gimbals / servo.torque;
-  const rate = layout.torqueScale / (layout.momentumScale * cosine);
-  const jump = (unit * servo.gimbalInertia * rate) / problem.step;
+  const inertia = unit * servo.gimbalInertia;
+  const speed = layout.torqueScale / layout.momentumScale;
+  const jump = (inertia * speed) / problem.step;
+  const smooth = inertia * speed * speed;
+  const gyro = unit * servo.wheelMomentum;
+  const body = bodyRate ? bodyRate[k % bodyRate.length] : 0;
+  const byControl = jump / c + (2 * smooth * now * s) / c ** 3;
+  const byMomentum =
+    (jump * (now - before) * s) / c ** 3 +
+    smooth * now * now * (1 / c ** 3 + (3 * s * s) / c ** 5) -
+    (gyro * (body + leanRate) * s) / c;
   clearForm(w);
-  if (k < problem.intervals) formOfControl(w, layout, control, jump);
-  addTerm(w, layout.previous, -jump);
-  const gyro = unit * servo.wheelMomentum * cosine;
-  if (layout.lean >= 0) addTerm(w, layout.leanRate, gyro * layout.leanRateScale);
-  w.offset += unit * servo.gimbalInertia * (rate * share) ** 2 * (sine / cosine);
-  if (bodyRate) w.offset += gyro * bodyRate[k % bodyRate.length];
+  if (k < problem.intervals) formOfControl(w, layout, control, byControl);
+  addTerm(w, layout.previous, -jump / c);
+  if (layout.lean >= 0) addTerm(w, layout.leanRate, gyro * c * layout.leanRateScale);
+  if (byMomentum !== 0) addTerm(w, layout.momentum, byMomentum);
+  // value at the pass, less what the first-order terms make of the pass itself; terms linear as they stand cancel
+  w.offset += gyro * body * c - byMomentum * s - (smooth * now * now * s) / c ** 3;
   const loosening = plan.mode === 'servo torque' ? 1 / servo.torque : 0;
   addRow(w, 1, tightening, loosening);
   addRow(w, -1, tightening, loosening);

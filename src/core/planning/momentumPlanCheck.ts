@@ -11,7 +11,7 @@ export interface AxisSchedule {
   readonly tilt: Float64Array;
   /** rad/s, just after the node */
   readonly tiltRate: Float64Array;
-  /** rad/s^2 at the node: jump of the tilt rate over one step, and its smooth part */
+  /** rad/s^2 at the node: jump of the tilt rate spread over one step about the node, and its smooth part */
   readonly tiltAcceleration: Float64Array;
   /** N m of one servo at the node; zero without a servo */
   readonly servoTorque: Float64Array;
@@ -119,7 +119,10 @@ function checkInterval(
       note(findings, rateLimit, i, time, Math.abs(tiltRate), array.tiltRate);
       if (array.servo) {
         const body = mix(bodyRate, k, share) + leanRate;
-        const jump = j === 0 ? schedule.tiltAcceleration[k] - tiltRate * tiltRate * Math.tan(tilt) : 0;
+        // a change of tilt rate at a node takes from half a step before it to half a step after
+        const node = 2 * j <= refine ? k : k + 1;
+        const jump =
+          schedule.tiltAcceleration[node] - schedule.tiltRate[node] ** 2 * Math.tan(schedule.tilt[node]);
         const torque = servoTorqueAt(axis, tilt, tiltRate, jump, body);
         note(findings, servoLimit, i, time, Math.abs(torque), array.servo.torque);
       }

@@ -1,6 +1,6 @@
 import { checkCertificate } from './certificateCheck';
 import { coneExcess, scaleCones } from './coneScaling';
-import { fillCorrection, longestStep, moveCones, scaleRows, solveNewton } from './newtonStep';
+import { fillCorrection, longestStep, moveCones, refineStep, scaleRows, solveNewton } from './newtonStep';
 import { addRowsTransposed, multiplyRows, packRows } from './packedRows';
 import type { SolverOptions } from './solverOptions';
 import type { Certificate } from './solverOutcome';
@@ -18,6 +18,8 @@ export interface InteriorRun {
 
 /** Share of the longest step that is taken. */
 const stepShare = 0.99;
+/** Stationarity above this share of its tolerance late in a run is rounding, worth a round of refinement. */
+const lossShare = 0.05;
 /** Below this the step is as good as none. */
 const leastStep = 1e-9;
 
@@ -136,7 +138,13 @@ function leansToContradiction(problem: StageProblem, work: SolverWork): boolean 
 }
 
 /** Predictor, corrector, and the move; returns the step taken, 0 when the factorisation fails. */
-function advance(problem: StageProblem, options: SolverOptions, work: SolverWork, gap: number): number {
+function advance(
+  problem: StageProblem,
+  options: SolverOptions,
+  work: SolverWork,
+  gap: number,
+  isLossy: boolean,
+): number {
   const { point, sizes } = work;
   if (!scaleCones(sizes, point.slack, point.dual, work.scaling)) return 0;
   scaleRows(problem, work);
@@ -160,6 +168,7 @@ function advance(problem: StageProblem, options: SolverOptions, work: SolverWork
     const rest = 1 - affine;
     fillCorrection(work);
     solveNewton(problem, work, (rest * rest * rest * gap) / sizes.degree, true);
+    if (isLossy) refineStep(problem, work);
     step = Math.min(1, stepShare * longestStep(work));
     moveCones(work, step);
   }
@@ -191,7 +200,8 @@ export function runInteriorPoint(
     const gap = fillResiduals(problem, work);
     const primal = Math.max(largest(work.equations), largest(work.rowResidual));
     const boundary = largest(work.borderGradient);
-    const dual = Math.max(largest(work.gradient), boundary);
+    const scale = 1 + Math.max(largest(point.dynamicsDual), largest(point.dual));
+    const dual = Math.max(largest(work.gradient) / scale, boundary);
     const objective = evaluateObjective(problem, point.z, point.border);
     if (!(primal < Infinity && dual < Infinity && gap < Infinity)) {
       return { end: 'stalled', iterations: iteration, certificate: null };
@@ -213,7 +223,7 @@ export function runInteriorPoint(
       work.hasKept = true;
       isKept = true;
     }
-    const step = advance(problem, options, work, gap);
+    const step = advance(problem, options, work, gap, dual > lossShare * options.tolerance && primal < 1e-3);
     if (!(step > leastStep)) return { end: 'stalled', iterations: iteration, certificate: null };
   }
   return { end: 'out of iterations', iterations: options.maxIterations, certificate: null };

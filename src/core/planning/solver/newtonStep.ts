@@ -3,6 +3,7 @@ import { addRowsTransposed, multiplyRows } from './packedRows';
 import type { SolverWork } from './solverWork';
 import type { StageProblem } from './stageProblem';
 
+import { addSmoothProduct } from './stageProducts';
 import { solveStages } from './stageRiccati';
 
 /** Divides the packed rows and the shared columns by the cone scaling. O(entries), allocates nothing. */
@@ -188,6 +189,39 @@ export function solveNewton(
   for (let r = 0; r < rows; r++) {
     stepDual[r] += rowRight[r];
     stepSlack[r] -= stepDual[r];
+  }
+}
+
+/**
+ * Corrects the step by what rounding left of its stationarity row (one round of iterative refinement).
+ *
+ * Near the end the barrier's weights span twenty decades, and the recursion over the stages loses the small
+ * ones among the large. O(N width^2 + rows width), allocates nothing.
+ */
+export function refineStep(problem: StageProblem, work: SolverWork): void {
+  const { sizes, packed, right, rightBorder, rowRight, stepSlack, stepDual } = work;
+  const { stepZ, stepDynamics, stepBorder, refineZ, refineDynamics, refineBorder } = work;
+  right.set(work.gradient);
+  rightBorder.set(work.borderGradient);
+  addSmoothProduct(problem, stepZ, stepDynamics, stepBorder, right, rightBorder);
+  addRowsTransposed(sizes, packed, packed.scaled, work.scaledShared, stepDual, right, rightBorder);
+  solveStages(
+    problem,
+    work.factor,
+    right,
+    rightBorder,
+    work.noResidual,
+    refineZ,
+    refineDynamics,
+    refineBorder,
+  );
+  multiplyRows(sizes, packed, packed.scaled, work.scaledShared, refineZ, refineBorder, rowRight);
+  for (let i = 0; i < stepZ.length; i++) stepZ[i] += refineZ[i];
+  for (let i = 0; i < stepDynamics.length; i++) stepDynamics[i] += refineDynamics[i];
+  for (let i = 0; i < stepBorder.length; i++) stepBorder[i] += refineBorder[i];
+  for (let r = 0; r < sizes.rows; r++) {
+    stepDual[r] += rowRight[r];
+    stepSlack[r] -= rowRight[r];
   }
 }
 

@@ -10,6 +10,12 @@ const matrixTimes = (m: Float64Array, at: number, columns: number, x: Float64Arr
   return sum;
 };
 
+const largest = (x: Float64Array): number => {
+  let worst = 0;
+  for (const v of x) if (!(Math.abs(v) <= worst)) worst = Math.abs(v);
+  return worst;
+};
+
 /** |v| - t of a second-order cone's vector: positive outside. */
 const outside = (x: Float64Array, at: number, dim: number): number => {
   let tail = 0;
@@ -70,6 +76,7 @@ export function checkOptimality(problem: StageProblem, point: StagePoint, object
   const { stages, states, controls, width, shared, boundaryRows } = sizes;
   const rows: RowCheck = { limits: 0, dualCone: 0, complementarity: 0 };
   const w = point.border.subarray(boundaryRows);
+  const scale = 1 + Math.max(largest(problem.gradient), largest(point.dynamicsDual), largest(point.dual));
   let equations = 0;
   let stationarity = 0;
   const sharedGradient = Array.from(
@@ -119,7 +126,7 @@ export function checkOptimality(problem: StageProblem, point: StagePoint, object
   return {
     equations,
     limits: rows.limits,
-    stationarity,
+    stationarity: stationarity / scale,
     dualCone: rows.dualCone,
     complementarity: Math.abs(rows.complementarity) / (1 + Math.abs(objective)),
   };

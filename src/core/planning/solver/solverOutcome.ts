@@ -6,7 +6,7 @@ export interface Residuals {
   readonly equations: number;
   /** how far outside the limits the point itself is (not its slack) */
   readonly limits: number;
-  /** gradient of the Lagrangian */
+  /** gradient of the Lagrangian, over 1 + the largest gradient or multiplier it is made of */
   readonly stationarity: number;
   /** how far outside the dual cone the multipliers are */
   readonly dualCone: number;

@@ -33,6 +33,11 @@ export interface SolverWork {
   readonly stepBorder: Float64Array;
   readonly stepSlack: Float64Array;
   readonly stepDual: Float64Array;
+  /** correction of a step, and equations without residual */
+  readonly refineZ: Float64Array;
+  readonly refineDynamics: Float64Array;
+  readonly refineBorder: Float64Array;
+  readonly noResidual: Float64Array;
   /** made on the first problem that needs the elastic phase */
   elastic: { readonly problem: StageProblem; readonly work: SolverWork } | null;
 }
@@ -62,6 +67,10 @@ export function createSolverWork(sizes: StageSizes): SolverWork {
     stepBorder: new Float64Array(border),
     stepSlack: new Float64Array(rows),
     stepDual: new Float64Array(rows),
+    refineZ: new Float64Array(nodes),
+    refineDynamics: new Float64Array(stages * states),
+    refineBorder: new Float64Array(border),
+    noResidual: new Float64Array(stages * states),
     elastic: null,
   };
 }
