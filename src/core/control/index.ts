@@ -1,3 +1,4 @@
+export * from './classicTuning';
 export * from './closedLoop';
 export * from './controllers';
 export * from './controllerTerms';
@@ -5,6 +6,7 @@ export * from './delayLimits';
 export * from './directSearch';
 export * from './estimators';
 export * from './gainDesign';
+export * from './gainMap';
 export * from './linear/exponential';
 export * from './linear/lyapunov';
 export * from './linear/riccati';
@@ -18,3 +20,4 @@ export * from './rollActuators';
 export * from './routh';
 export * from './sensorModel';
 export * from './servoModel';
+export * from './spinDown';

@@ -135,7 +135,7 @@ export function readCommand(model: ServoModel, work: ServoWork, dt: number): num
   let readAt = reads ? start + s[SERVO_STATE.untilRead]! : end;
   if (reads) {
     /* The servo looks at its input only at its own frames; what arrives between waits. */
-    while (readAt < end) {
+    while (readAt < end - 1e-9) {
       mean += held * (readAt - from);
       from = readAt;
       while (work.cursor[1]! > 0 && work.release[work.cursor[0]!]! <= readAt + 1e-9) {
@@ -265,13 +265,15 @@ function stepWithPlay(model: ServoModel, s: Float64Array, load: number, wanted: 
   s[SERVO_STATE.tilt]! += freeRate * dt;
   const high = s[SERVO_STATE.motor]! + half;
   const low = s[SERVO_STATE.motor]! - half;
-  if (s[SERVO_STATE.tilt]! > high) {
-    s[SERVO_STATE.tilt] = high;
-    s[SERVO_STATE.rate] = s[SERVO_STATE.motorRate]!;
-  } else if (s[SERVO_STATE.tilt]! < low) {
-    s[SERVO_STATE.tilt] = low;
-    s[SERVO_STATE.rate] = s[SERVO_STATE.motorRate]!;
-  }
+  const tilt = s[SERVO_STATE.tilt]!;
+  if (tilt <= high && tilt >= low) return;
+  /* They meet and go on together, without bounce. */
+  s[SERVO_STATE.tilt] = tilt > high ? high : low;
+  const common =
+    (model.gimbalInertia * freeRate + model.rotorInertia * s[SERVO_STATE.motorRate]!) /
+    (model.gimbalInertia + model.rotorInertia);
+  s[SERVO_STATE.rate] = common;
+  s[SERVO_STATE.motorRate] = common;
 }
 
 /* Hard stops take any load; the motor does not pay for it. */
@@ -279,14 +281,14 @@ function holdAtStop(model: ServoModel, s: Float64Array): void {
   const tilt = s[SERVO_STATE.tilt]!;
   if (tilt <= model.tiltMax && tilt >= model.tiltMin) return;
   const side = tilt > model.tiltMax ? 1 : -1;
-  const stop = side > 0 ? model.tiltMax : model.tiltMin;
-  s[SERVO_STATE.tilt] = stop;
+  const past = tilt - (side > 0 ? model.tiltMax : model.tiltMin);
+  const gap = tilt - s[SERVO_STATE.motor]!;
+  s[SERVO_STATE.tilt] = tilt - past;
   if (side * s[SERVO_STATE.rate]! > 0) s[SERVO_STATE.rate] = 0;
-  const reach = stop + side * 0.5 * model.backlash;
-  if (side * (s[SERVO_STATE.motor]! - reach) > 0) {
-    s[SERVO_STATE.motor] = reach;
-    if (side * s[SERVO_STATE.motorRate]! > 0) s[SERVO_STATE.motorRate] = 0;
-  }
+  /* A motor in touch with the gimbal stops with it, on the same side of the play. */
+  if (Math.abs(gap) < 0.5 * model.backlash - 1e-9) return;
+  s[SERVO_STATE.motor]! -= past;
+  if (side * s[SERVO_STATE.motorRate]! > 0) s[SERVO_STATE.motorRate] = 0;
 }
 
 /** N*m, root mean square of the servo's torque so far: what its windings must carry away as heat. */
