@@ -7,5 +7,8 @@ export * from './gaitPatterns';
 export * from './keyframes';
 export * from './ledger';
 export * from './legMass';
+export * from './lipm';
+export * from './motionFiles';
+export * from './numberTable';
 export * from './supportPolygon';
 export * from './waveLoad';
