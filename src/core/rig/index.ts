@@ -8,3 +8,4 @@ export * from './materials';
 export * from './parts';
 export * from './reading';
 export * from './schema';
+export * from './stockBearings';

@@ -1,0 +1,115 @@
+import type { Bearing, Housing, WheelPart } from '../rig';
+import { bearingDrag, lubricantDrag } from './bearings';
+import type { DragLaw } from './drive';
+import type { WheelDrag } from './losses';
+import { outerRadiusOf } from './wheelProperties';
+import { airAt, type Gas, STANDARD_PRESSURE, type Surround, windage } from './windage';
+
+/** What the gas sees of a wheel. */
+export interface WheelEnvelope {
+  /** m. */
+  readonly radius: number;
+  /** m, of the outermost part along the axis. */
+  readonly width: number;
+}
+
+const widthOf = (part: WheelPart): number => {
+  switch (part.kind) {
+    case 'disc':
+      return part.thickness;
+    case 'hub':
+      return part.length;
+    case 'rim':
+      return part.width;
+    case 'balls':
+      return part.diameter;
+    case 'bolts':
+      return 0;
+  }
+};
+
+/** Outer radius of a stack, and the width of what reaches within 2 % of it. */
+export function wheelEnvelope(parts: readonly WheelPart[]): WheelEnvelope {
+  const radius = Math.max(...parts.map(outerRadiusOf));
+  const outermost = parts.filter((part) => outerRadiusOf(part) >= 0.98 * radius && part.kind !== 'bolts');
+  return { radius, width: outermost.reduce((sum, part) => sum + widthOf(part), 0) };
+}
+
+export const surroundOf = (housing: Housing): Surround =>
+  housing.kind === 'open' ? { kind: 'open' } : { kind: 'walled', gap: housing.gap };
+
+/** Air in a housing; temperature K. */
+export const gasIn = (housing: Housing, temperature = 293.15): Gas =>
+  airAt(housing.kind === 'evacuated' ? housing.pressure : STANDARD_PRESSURE, temperature);
+
+/** Outside over bore of common deep-groove bearings, to guess a mean diameter where only the bore is known. */
+const USUAL_DIAMETER_RATIO = 2.3;
+
+/** Grease base oil when warm, m^2/s; from memory. */
+export const USUAL_GREASE_VISCOSITY = 25e-6;
+
+export interface WheelDragParts {
+  /** N*m, of all bearings: constant with speed. */
+  readonly bearings: number;
+  /** N*m, of their lubricant, at a speed. */
+  readonly lubricant: DragLaw;
+  /** N*m, at a speed. */
+  readonly windage: DragLaw;
+  readonly total: DragLaw;
+}
+
+/**
+ * All that drags on a wheel in its housing.
+ *
+ * @param envelope  outer size, m
+ * @param housing   open, shrouded or evacuated
+ * @param bearing   bore m, friction coefficient; two of them
+ * @param loads     N, mean load of each bearing, preload included
+ *
+ * Sources: with WINDAGE_FORMULAS and BEARING_FORMULAS.
+ */
+export function wheelDragParts(
+  envelope: WheelEnvelope,
+  housing: Housing,
+  bearing: Pick<Bearing, 'bore' | 'friction'>,
+  loads: readonly number[],
+  viscosity: number = USUAL_GREASE_VISCOSITY,
+): WheelDragParts {
+  const gas = gasIn(housing);
+  const surround = surroundOf(housing);
+  let bearings = 0;
+  for (const load of loads) bearings += bearingDrag(bearing.friction, load, bearing.bore);
+  const meanDiameter = (bearing.bore * (1 + USUAL_DIAMETER_RATIO)) / 2;
+  const lubricant = (speed: number): number => loads.length * lubricantDrag(speed, meanDiameter, viscosity);
+  const wind = (speed: number): number =>
+    windage(envelope.radius, envelope.width, speed, gas, surround).torque;
+  return {
+    bearings,
+    lubricant,
+    windage: wind,
+    total: (speed) => bearings + lubricant(speed) + wind(speed),
+  };
+}
+
+/**
+ * The drag as the dynamics takes it, constant + viscous + quadratic: right at the running speed in size and
+ * slope.
+ *
+ * @param parts  from `wheelDragParts`
+ * @param speed  rad/s, running speed, above 0
+ */
+export function fitWheelDrag(parts: WheelDragParts, speed: number): WheelDrag {
+  const changing = (at: number): number => parts.lubricant(at) + parts.windage(at);
+  const torque = changing(speed);
+  const h = 1e-3 * speed;
+  const slope = (changing(speed + h) - changing(speed - h)) / (2 * h);
+  const quadratic = (slope - torque / speed) / speed;
+  // Drag that rises slower than speed leaves part of it constant rather than a negative quadratic term.
+  if (quadratic < 0) {
+    return { constant: parts.bearings + torque - slope * speed, viscous: slope, quadratic: 0 };
+  }
+  if (slope * speed > 2 * torque) {
+    return { constant: parts.bearings, viscous: 0, quadratic: torque / (speed * speed) };
+  }
+  return { constant: parts.bearings, viscous: torque / speed - quadratic * speed, quadratic };
+}
