@@ -1,0 +1,95 @@
+import { useMemo } from 'react';
+import type { Evaluation } from '../../core/trial';
+import { useDocument } from '../state/document';
+import { useIsNarrow } from '../state/looks';
+import { useShown } from '../state/reading';
+import { useSession } from '../state/session';
+import type { Evaluated } from '../state/stream';
+import { Playhead } from './Playhead';
+import { RibbonPlot } from './RibbonPlot';
+import { countRows, placeBlocks } from './ribbonBlocks';
+import { lineCurves, momentCurves, tiltCurves } from './ribbonCurves';
+import { Transport } from './Transport';
+
+/** The time strip: blocks, curves on one time axis, and the playhead. */
+export function Ribbon() {
+  const shown = useShown();
+  return (
+    <section className="ribbon" aria-label="Ribbon">
+      <Transport />
+      {shown ? <RibbonBody shown={shown} /> : <p className="waiting">Working it out…</p>}
+    </section>
+  );
+}
+
+const courseOf = (shown: Evaluated) => (shown.plan.kind === 'unplanned' ? undefined : shown.plan.course);
+
+function RibbonBody({ shown }: { readonly shown: Evaluated }) {
+  const rig = useDocument((document) => document.rig);
+  const units = useSession((session) => session.units);
+  const openedLine = useSession((session) => session.openedLine);
+  const isNarrow = useIsNarrow();
+  const { motion } = shown;
+  const length = motion.samples > 1 ? (motion.time[motion.samples - 1] as number) : 0;
+
+  const tilt = useMemo(() => tiltCurves(shown, rig, units), [shown, rig, units]);
+  const second = useMemo(() => {
+    const line = shown.ledger.lines.find((candidate) => candidate.name === openedLine);
+    return (line && lineCurves(line, units)) ?? momentCurves(shown, units);
+  }, [shown, openedLine, units]);
+  const hasOpenedCourse = second.title !== 'Roll moment';
+
+  return (
+    <div className="ribbon-body">
+      <Blocks shown={shown} length={length} isGait={rig.jobs.gait.kind === 'pattern'} />
+      {(!isNarrow || !hasOpenedCourse) && <RibbonPlot data={tilt} length={length} hasTimeAxis={isNarrow} />}
+      {(!isNarrow || hasOpenedCourse) && <RibbonPlot data={second} length={length} hasTimeAxis />}
+      <Fall outcome={shown.outcome} length={length} />
+      <Playhead />
+    </div>
+  );
+}
+
+interface BlocksProps {
+  readonly shown: Evaluated;
+  readonly length: number;
+  readonly isGait: boolean;
+}
+
+function Blocks({ shown, length, isGait }: BlocksProps) {
+  const course = courseOf(shown);
+  const placed = useMemo(() => {
+    const cycle = isGait ? (course?.time.at(-1) ?? 0) : 0;
+    return placeBlocks(course?.blocks ?? [], cycle, length);
+  }, [course, isGait, length]);
+  const rows = countRows(course?.blocks ?? []);
+  if (rows === 0) return null;
+  return (
+    <ol className="blocks" style={{ gridTemplateRows: `repeat(${rows}, var(--block-height))` }}>
+      {placed.map(({ block, key, left, width }) => (
+        <li
+          key={key}
+          data-kind={block.kind}
+          style={{ gridRow: block.row + 1, left: `${left}%`, width: `${width}%` }}
+          title={block.label}
+        >
+          <span>{block.label}</span>
+        </li>
+      ))}
+    </ol>
+  );
+}
+
+type Outcome = Extract<Evaluation, { kind: 'evaluated' }>['outcome'];
+
+/** From the instant at which the body goes over, the ribbon is hatched and says so. */
+function Fall({ outcome, length }: { readonly outcome: Outcome; readonly length: number }) {
+  if (outcome.kind === 'holds' || !(length > 0)) return null;
+  return (
+    <div className="fall">
+      <div style={{ left: `${Math.min(100, (100 * outcome.at) / length)}%` }}>
+        <b className="word-fails">Falls</b>
+      </div>
+    </div>
+  );
+}
