@@ -20,6 +20,8 @@ export interface InteriorRun {
 const stepShare = 0.99;
 /** Stationarity above this share of its tolerance late in a run is rounding, worth a round of refinement. */
 const lossShare = 0.05;
+/** From this gap on, relative to the objective, every step is refined: the barrier's weights are at their widest. */
+const lateGap = 1e-6;
 /** Below this the step is as good as none. */
 const leastStep = 1e-9;
 
@@ -223,7 +225,9 @@ export function runInteriorPoint(
       work.hasKept = true;
       isKept = true;
     }
-    const step = advance(problem, options, work, gap, dual > lossShare * options.tolerance && primal < 1e-3);
+    const isLate = gap <= lateGap * (1 + Math.abs(objective));
+    const isLossy = primal < 1e-3 && (isLate || dual > lossShare * options.tolerance);
+    const step = advance(problem, options, work, gap, isLossy);
     if (!(step > leastStep)) return { end: 'stalled', iterations: iteration, certificate: null };
   }
   return { end: 'out of iterations', iterations: options.maxIterations, certificate: null };

@@ -22,7 +22,7 @@ export interface SolverOptions {
 export const defaultSolverOptions: SolverOptions = Object.freeze({
   maxIterations: 60,
   tolerance: 1e-9,
-  gapTolerance: 1e-9,
+  gapTolerance: 5e-9,
   radius: 100,
   regularise: 1e-10,
   warm: false,

@@ -214,6 +214,32 @@ function factorBorder(border: number, f: StageFactor): boolean {
   return true;
 }
 
+/** Whether a boundary row pins the first state alone. */
+function pinsStart(problem: StageProblem, b: number): boolean {
+  const { states } = problem.sizes;
+  for (let i = 0; i < states; i++) if (problem.boundaryEnd[b * states + i] !== 0) return false;
+  return true;
+}
+
+/**
+ * Adds the square of every boundary row on the first state alone to the stage block. The row holds at the
+ * solution, so nothing changes but the pivots: a pinned state without cost of its own would leave them at
+ * the size of the regularisation.
+ */
+function addPinnedSquares(problem: StageProblem, f: StageFactor): void {
+  const { states, controls, width, border, boundaryRows } = problem.sizes;
+  const total = width + border;
+  const start = problem.boundaryStart;
+  for (let b = 0; b < boundaryRows; b++) {
+    if (!pinsStart(problem, b)) continue;
+    for (let i = 0; i < states; i++) {
+      for (let j = i; j < states; j++) {
+        f.block[(controls + i) * total + controls + j] += start[b * states + i] * start[b * states + j];
+      }
+    }
+  }
+}
+
 /**
  * Factorises the Newton system with H_k + rows' rows on the stages.
  *
@@ -255,6 +281,7 @@ export function factorStages(
       }
     }
     if (k === 0) {
+      addPinnedSquares(problem, f);
       for (let b = 0; b < boundaryRows; b++) {
         for (let i = 0; i < states; i++) {
           m[(controls + i) * total + width + b] += problem.boundaryStart[b * states + i];
@@ -285,7 +312,7 @@ function sweepBack(
   rightBorder: Float64Array,
   residual: Float64Array,
 ): void {
-  const { stages, states, controls, width, border } = problem.sizes;
+  const { stages, states, controls, width, border, boundaryRows } = problem.sizes;
   const total = width + border;
   const p = f.valueGradient;
   const g = f.column;
@@ -315,6 +342,10 @@ function sweepBack(
       for (let b = 0; b < border; b++) t[b] -= e[store + width + b] * gj;
     }
     for (let i = 0; i < states; i++) p[k * states + i] = g[controls + i];
+  }
+  for (let b = 0; b < boundaryRows; b++) {
+    if (!pinsStart(problem, b)) continue;
+    for (let i = 0; i < states; i++) p[i] += problem.boundaryStart[b * states + i] * rightBorder[b];
   }
 }
 
