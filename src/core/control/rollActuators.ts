@@ -246,14 +246,15 @@ function advanceWheel(
   const asked = readCommand(a.line, line, dt);
   line.state[SERVO_STATE.time]! += dt;
   const share = a.lag > 0 ? -Math.expm1(-dt / a.lag) : 1;
-  let torque = w.wheel[1]! + share * (asked - w.wheel[1]!);
+  const before = w.wheel[1]!;
+  /* The lag's exact mean over the step, not its end, or the loop would gain half a step of lead. */
+  const mean = a.lag > 0 ? asked + ((before - asked) * a.lag * share) / dt : asked;
   const speed = w.wheel[0]! / a.noLoadMomentum;
   const high = Math.min(a.torqueLimit, a.stallTorque * (1 - speed));
   const low = Math.max(-a.torqueLimit, -a.stallTorque * (1 + speed));
-  const limited = Math.min(Math.max(torque, low), high);
-  if (limited !== torque) w.limited[0]! += dt;
-  torque = limited;
-  w.wheel[1] = torque;
+  const torque = Math.min(Math.max(mean, low), high);
+  if (torque !== mean) w.limited[0]! += dt;
+  w.wheel[1] = Math.min(Math.max(before + share * (asked - before), low), high);
   w.wheel[0]! += dt * torque;
   w.torque[0] = torque;
   w.heat[0]! += torque * torque * dt;
