@@ -111,7 +111,7 @@ function RigText({ path, label }: AtPath) {
 }
 
 /** Everything the schema knows at a path and below, lists left out. */
-export function RigFields({ path, label, omit }: AtPath & { readonly omit?: readonly string[] }) {
+export function RigFields({ path, label, hidesKind }: AtPath & { readonly hidesKind?: boolean }) {
   const rig = useDocument((document) => document.rig);
   const shape = shapeAt(rig, path);
   switch (shape.kind) {
@@ -131,12 +131,10 @@ export function RigFields({ path, label, omit }: AtPath & { readonly omit?: read
     case 'group':
       return (
         <>
-          {shape.kind === 'variant' && <RigKind path={path} label={label} />}
-          {shape.keys
-            .filter((key) => !omit?.includes(key))
-            .map((key) => (
-              <RigFields key={key} path={[...path, key]} />
-            ))}
+          {shape.kind === 'variant' && !hidesKind && <RigKind path={path} label={label} />}
+          {shape.keys.map((key) => (
+            <RigFields key={key} path={[...path, key]} />
+          ))}
         </>
       );
     case 'other':

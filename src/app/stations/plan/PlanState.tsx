@@ -1,0 +1,72 @@
+import type { Cure } from '../../../core/trial';
+import { useDocument } from '../../state/document';
+import { useShown } from '../../state/reading';
+import { exportSchedule } from './exportSchedule';
+
+/** Whether there is a plan; if none, what forbids it and what would cure it, each cure one tap. */
+export function PlanState() {
+  const shown = useShown();
+  if (!shown) return <p className="plan-state waiting">Working it out…</p>;
+  const { plan, outcome } = shown;
+  const fall = outcome.kind === 'falls' && (
+    <p>
+      <b className="word-fails">Falls</b> in the preview after {outcome.at.toFixed(2)} s.
+    </p>
+  );
+  switch (plan.kind) {
+    case 'planned':
+      return (
+        <div className="plan-state" data-state="holds">
+          <h3>Planned</h3>
+          {fall || <p>The preview holds to the end.</p>}
+          <p className="aside">
+            {plan.course.time.length} instants, {plan.iterations} steps of the solver,{' '}
+            {(plan.solveSeconds * 1000).toFixed(1)} ms.
+          </p>
+          <button type="button" className="wide" onClick={exportSchedule}>
+            Tilt schedule as CSV
+          </button>
+        </div>
+      );
+    case 'impossible':
+      return (
+        <div className="plan-state" data-state="fails">
+          <h3>
+            <b className="word-fails">No plan</b>
+          </h3>
+          <p>{plan.sentence}</p>
+          {fall}
+          <Cures cures={plan.cures} />
+        </div>
+      );
+    case 'unplanned':
+      return (
+        <div className="plan-state" data-state="notYet">
+          <h3>Not planned</h3>
+          <p>{plan.sentence}</p>
+          {fall}
+        </div>
+      );
+  }
+}
+
+function Cures({ cures }: { readonly cures: readonly Cure[] }) {
+  const edit = useDocument((document) => document.edit);
+  if (cures.length === 0)
+    return <p>No single change within the allowed ranges was found that would cure it.</p>;
+  return (
+    <div className="cures">
+      <p>Any one of these would do:</p>
+      {cures.map((cure) => (
+        <button
+          key={cure.sentence}
+          type="button"
+          className="wide"
+          onClick={() => edit(cure.sentence, () => cure.rig)}
+        >
+          {cure.sentence}
+        </button>
+      ))}
+    </div>
+  );
+}
