@@ -72,7 +72,8 @@ export function floatHull(
         kind: 'float',
         freedoms: 'roll',
         point: [0, 0, whole.com[2]],
-        righting: { kind: 'curve', angle: [...righting.arms.angle], arm: [...righting.arms.arm] },
+        // A hull alike on both sides has no arm upright; cutting the section leaves rounding there.
+        righting: { kind: 'curve', angle: [...righting.arms.angle], arm: [0, ...righting.arms.arm.subarray(1)] },
         addedInertia: water.addedInertia,
         linearDamping: water.linearDamping,
         quadraticDamping: water.quadraticDamping,

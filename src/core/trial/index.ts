@@ -1,2 +1,5 @@
+export * from './cures';
+export * from './evaluate';
 export * from './evaluation';
 export * from './motion';
+export { type Doubt, USUAL_DOUBT } from './preview';

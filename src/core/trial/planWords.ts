@@ -1,0 +1,47 @@
+import type { LedgerLineName, LimitName, MomentumPlanOutcome } from '../planning';
+import { type Dimension, formatQuantity } from '../units';
+
+interface LimitWords {
+  readonly line: LedgerLineName;
+  readonly dimension: Dimension;
+  readonly noun: string;
+}
+
+const WORDS: Readonly<Record<LimitName, LimitWords>> = {
+  momentum: { line: 'momentum', dimension: 'angularMomentum', noun: 'stored momentum' },
+  'tilt rate': { line: 'tiltRate', dimension: 'angularRate', noun: 'tilt rate' },
+  torque: { line: 'rollTorque', dimension: 'torque', noun: 'torque' },
+  'servo torque': { line: 'servoTorque', dimension: 'torque', noun: 'servo torque' },
+  'centre of pressure': {
+    line: 'centreOfPressure',
+    dimension: 'length',
+    noun: 'room for the centre of pressure',
+  },
+  lean: { line: 'tilt', dimension: 'angle', noun: 'room to lean' },
+  'mean moment': { line: 'rollTorque', dimension: 'torque', noun: 'mean moment over the cycle' },
+};
+
+/** Says which limit forbids a plan and by how much, in words with units. */
+export function explainImpossible(outcome: Extract<MomentumPlanOutcome, { kind: 'impossible' }>): {
+  readonly line: LedgerLineName;
+  readonly sentence: string;
+} {
+  const { line, dimension, noun } = WORDS[outcome.limit];
+  const short = formatQuantity(outcome.shortBy, dimension);
+  if (outcome.limit === 'mean moment') {
+    const shift = outcome.shift ?? 0;
+    const way = shift > 0 ? 'left' : 'right';
+    return {
+      line,
+      sentence: `No plan closes on itself: ${short} of ${noun} is left over, and an array can only lend momentum. Move the centre of mass ${formatQuantity(Math.abs(shift), 'length')} to the ${way}.`,
+    };
+  }
+  if (!Number.isFinite(outcome.shortBy)) {
+    return {
+      line,
+      sentence: `No plan exists: ${noun} falls short, and no amount of it alone would be enough.`,
+    };
+  }
+  const where = outcome.limit === 'centre of pressure' ? ' on each side of the support' : '';
+  return { line, sentence: `No plan exists: ${noun} falls short by ${short}${where}.` };
+}

@@ -1,0 +1,26 @@
+/** Off the main thread: what a rig comes to, and what would cure one that cannot be planned. */
+import { expose, transfer } from 'comlink';
+import type { Rig } from '../core/rig';
+import {
+  type Cure,
+  createEvaluationWork,
+  type Evaluation,
+  evaluate,
+  findCures,
+  type Switches,
+} from '../core/trial';
+import { buffersOf } from './buffers';
+
+const work = createEvaluationWork(() => performance.now() / 1000);
+
+const calls = {
+  evaluate(rig: Rig, switches: Switches): Evaluation {
+    const evaluation = evaluate(rig, switches, work);
+    return transfer(evaluation, buffersOf(evaluation));
+  },
+  findCures: (rig: Rig): readonly Cure[] => findCures(rig),
+};
+
+export type EvaluationCalls = typeof calls;
+
+expose(calls);

@@ -1,0 +1,1 @@
+export { createEvaluator, type Evaluator } from './evaluator';
