@@ -1,0 +1,85 @@
+import { useEffect, useState } from 'react';
+import { Header } from './Header';
+import { LedgerLadder, LedgerLineFolded } from './ledger/LedgerLadder';
+import { OpenedLine } from './ledger/OpenedLine';
+import { Ribbon } from './ribbon/Ribbon';
+import { StageFrame } from './StageFrame';
+import { Dialog } from './sheet/Dialog';
+import { Notices } from './sheet/Notices';
+import { useDocument } from './state/document';
+import { useIsNarrow } from './state/looks';
+import { useSession } from './state/session';
+import { findStation } from './stations';
+
+/** The page: stations on top, the sheet at the left, the ledger at the right, the ribbon below, the stage between. */
+export function App() {
+  const isNarrow = useIsNarrow();
+  useUndoKeys();
+  useStageInsets(isNarrow);
+  return (
+    <div className="app">
+      <Header />
+      <StageFrame />
+      <Sheet />
+      {isNarrow ? <NarrowLedger /> : <LedgerLadder />}
+      {!isNarrow && <OpenedLine />}
+      <Ribbon />
+      <Notices />
+    </div>
+  );
+}
+
+/** Width of the ledger, which lies over the stage; agrees with styles/layout.css. */
+const LEDGER_WIDTH = 236;
+
+function useStageInsets(isNarrow: boolean): void {
+  useEffect(() => {
+    useSession.getState().setStageInsets({ left: 0, right: isNarrow ? 0 : LEDGER_WIDTH, top: 0, bottom: 0 });
+  }, [isNarrow]);
+}
+
+function Sheet() {
+  const id = useSession((session) => session.station);
+  const station = findStation(id);
+  if (!station) return null;
+  return (
+    <section className="sheet" aria-label={station.word}>
+      <h1 className="sheet-question">{station.question}</h1>
+      <div className="sheet-body" key={id}>
+        <station.Sheet />
+      </div>
+    </section>
+  );
+}
+
+function NarrowLedger() {
+  const [isUnfolded, setUnfolded] = useState(false);
+  return (
+    <>
+      <LedgerLineFolded onUnfold={() => setUnfolded(true)} />
+      {isUnfolded && (
+        <Dialog title="Ledger" onClose={() => setUnfolded(false)}>
+          <OpenedLine />
+          <LedgerLadder />
+        </Dialog>
+      )}
+    </>
+  );
+}
+
+/** Ctrl or Cmd with Z and Y, unless a text is being typed. */
+function useUndoKeys(): void {
+  useEffect(() => {
+    const onKeyDown = (event: KeyboardEvent): void => {
+      if (!(event.ctrlKey || event.metaKey) || event.target instanceof HTMLInputElement) return;
+      const { undo, redo } = useDocument.getState();
+      const key = event.key.toLowerCase();
+      if (key === 'z' && !event.shiftKey) undo();
+      else if (key === 'y' || key === 'z') redo();
+      else return;
+      event.preventDefault();
+    };
+    addEventListener('keydown', onKeyDown);
+    return () => removeEventListener('keydown', onKeyDown);
+  }, []);
+}
