@@ -189,10 +189,10 @@ export const SKIFF: Rig = {
   sensing: { ...BENCH_SENSING, height: 0.5, loopRate: 200 },
   control: { kind: 'computed' },
   jobs: {
-    name: 'Beam sea, then a wake',
+    name: 'Beam sea',
     gait: { kind: 'stand' },
-    sequence: [{ kind: 'waves', time: 0, duration: 24, height: 0.25, period: 2.6, heading: Math.PI / 2 }],
-    duration: 24,
+    sequence: [{ kind: 'waves', time: 0, duration: 16, height: 0.25, period: 2.6, heading: Math.PI / 2 }],
+    duration: 16,
   },
 };
 

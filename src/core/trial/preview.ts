@@ -56,7 +56,7 @@ export const USUAL_DOUBT: Doubt = { centreAcross: 0.004, wheelSpeed: 0.97 };
 const GONE = 1.2;
 /** Lean counted as going over, rad: feet no longer where the gait wants them, or water over the side. */
 const LOST: Readonly<Record<PlanSetting['kind'], number>> = { firm: 0.3, lean: 0.9 };
-const LONGEST_STEP = 0.0025;
+const LONGEST_STEP = 0.005;
 const SAMPLES_PER_SECOND = 100;
 
 export interface PreviewResult {
@@ -95,8 +95,9 @@ export interface PreviewRun {
   readonly place: PlanPlace;
   readonly tilt: Float64Array;
   readonly rate: Float64Array;
-  /** 3, N*m, body frame. */
+  /** 3, N*m, body frame: now, and the mean since the last sample (servos move in frames, so one instant misleads). */
   readonly torque: Float64Array;
+  readonly meanTorque: Float64Array;
   /** Firm: +1 tipped to the right, about a right edge (positive roll), -1 to the left, 0 flat. */
   side: -1 | 0 | 1;
   /** m, edge it pivots on, to the left in the walking frame. */
@@ -131,9 +132,11 @@ export function runPreview(
   for (let sample = 0; sample <= intervals; sample++) {
     recordSample(run, schedules, motion, sample);
     if (sample === intervals) break;
+    run.meanTorque.fill(0);
     for (let k = 0; k < perSample; k++) {
       const time = (sample * perSample + k) * dt;
       if (Math.abs(run.state[0]) < GONE) stepRun(run, time, dt);
+      for (let axis = 0; axis < 3; axis++) run.meanTorque[axis] += run.torque[axis] / perSample;
       if (fallenAt === undefined && Math.abs(run.state[0]) > LOST[setting.kind]) fallenAt = time;
     }
   }
@@ -206,12 +209,14 @@ function prepareRun(
     tilt: new Float64Array(n),
     rate: new Float64Array(n),
     torque: new Float64Array(3),
+    meanTorque: new Float64Array(3),
     side: 0,
     edge: 0,
   };
   readGimbals(run, 0);
   writeGimbals(run);
   findTorque(run);
+  run.meanTorque.set(run.torque);
   return run;
 }
 

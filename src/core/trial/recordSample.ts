@@ -24,7 +24,7 @@ export function recordSample(
   arrayMomentum(model.array, run.tilt, run.momentum, momentumNow);
   for (let axis = 0; axis < 3; axis++) {
     motion.momentum[3 * sample + axis] = momentumNow[axis];
-    motion.torque[3 * sample + axis] = run.torque[axis];
+    motion.torque[3 * sample + axis] = run.meanTorque[axis];
   }
   if (setting.kind === 'firm') recordWalk(run, setting, motion, sample);
   else recordLean(run, setting, motion, sample);
@@ -45,7 +45,7 @@ function recordWalk(run: PreviewRun, setting: FirmPlanSetting, motion: Motion, s
   const centre = demand.centreOfMass;
   writeTurned(motion.centreOfMass, 3 * sample, turn, along(centre, 0), along(centre, 1), along(centre, 2));
   recordFeet(run, motion, sample, turn);
-  const pressure = -(place.valueOf(demand.roll) + run.torque[0]) / place.valueOf(demand.verticalForce);
+  const pressure = -(place.valueOf(demand.roll) + run.meanTorque[0]) / place.valueOf(demand.verticalForce);
   motion.centreOfPressure[2 * sample] = turn.forward + place.valueOf(demand.bareAlong);
   motion.centreOfPressure[2 * sample + 1] = run.side === 0 ? pressure : run.edge;
 }
