@@ -26,8 +26,10 @@ export const createConeScaling = (sizes: StageSizes): ConeScaling => ({
 
 /** t^2 - |v|^2 of the vector at `at`, in the form (t - |v|)(t + |v|) that loses least near the boundary. */
 function hyperbolicNorm2(x: Float64Array, at: number, dim: number): number {
-  let tail = 0;
-  for (let i = 1; i < dim; i++) tail += x[at + i] * x[at + i];
+  // dimension 3 is written out here and below: it is nearly every cone there is, and the loop costs half
+  let tail = x[at + 1] * x[at + 1];
+  if (dim === 3) tail += x[at + 2] * x[at + 2];
+  else for (let i = 2; i < dim; i++) tail += x[at + i] * x[at + i];
   tail = Math.sqrt(tail);
   return (x[at] - tail) * (x[at] + tail);
 }
@@ -69,8 +71,8 @@ export function scaleCones(
     if (!(s2 > 0 && l2 > 0 && slack[at] > 0 && dual[at] > 0)) return false;
     const sn = 1 / Math.sqrt(s2);
     const ln = 1 / Math.sqrt(l2);
-    let dot = 0;
-    for (let i = 0; i < dim; i++) dot += slack[at + i] * dual[at + i];
+    let dot = slack[at] * dual[at] + slack[at + 1] * dual[at + 1];
+    for (let i = 2; i < dim; i++) dot += slack[at + i] * dual[at + i];
     const half = 0.5 / Math.sqrt((1 + dot * sn * ln) / 2);
     scale[at] = (slack[at] * sn + dual[at] * ln) * half;
     for (let i = 1; i < dim; i++) scale[at + i] = (slack[at + i] * sn - dual[at + i] * ln) * half;
@@ -95,6 +97,14 @@ export function multiplyCone(
 ): void {
   const w0 = scale[at];
   const x0 = x[at];
+  if (dim === 3) {
+    const dot3 = scale[at + 1] * x[at + 1] + scale[at + 2] * x[at + 2];
+    const tail3 = beta * (x0 + dot3 / (1 + w0));
+    out[at] = beta * (w0 * x0 + dot3);
+    out[at + 1] = beta * x[at + 1] + scale[at + 1] * tail3;
+    out[at + 2] = beta * x[at + 2] + scale[at + 2] * tail3;
+    return;
+  }
   let dot = 0;
   for (let i = 1; i < dim; i++) dot += scale[at + i] * x[at + i];
   const tail = beta * (x0 + dot / (1 + w0));
@@ -114,6 +124,14 @@ export function divideCone(
   const w0 = scale[at];
   const x0 = x[at];
   const inverse = 1 / beta;
+  if (dim === 3) {
+    const dot3 = scale[at + 1] * x[at + 1] + scale[at + 2] * x[at + 2];
+    const tail3 = inverse * (dot3 / (1 + w0) - x0);
+    out[at] = inverse * (w0 * x0 - dot3);
+    out[at + 1] = inverse * x[at + 1] + scale[at + 1] * tail3;
+    out[at + 2] = inverse * x[at + 2] + scale[at + 2] * tail3;
+    return;
+  }
   let dot = 0;
   for (let i = 1; i < dim; i++) dot += scale[at + i] * x[at + i];
   const tail = inverse * (dot / (1 + w0) - x0);
@@ -136,26 +154,35 @@ export function coneStep(
   dim: number,
   limit: number,
 ): number {
-  const norm2 = hyperbolicNorm2(x, at, dim);
-  const inverse = 1 / Math.sqrt(norm2);
-  const x0 = x[at] * inverse;
-  let worst = 0;
-  for (let side = 0; side < 2; side++) {
-    const d = side === 0 ? d1 : d2;
-    let dot = 0;
-    for (let i = 1; i < dim; i++) dot += x[at + i] * d[at + i];
-    dot *= inverse;
-    const head = x0 * d[at] - dot;
-    const turn = ((head + d[at]) / (x0 + 1)) * inverse;
-    let tail = 0;
-    for (let i = 1; i < dim; i++) {
-      const v = d[at + i] - turn * x[at + i];
-      tail += v * v;
-    }
-    const need = (Math.sqrt(tail) - head) * inverse;
-    if (need > worst) worst = need;
-  }
+  const inverse = 1 / Math.sqrt(hyperbolicNorm2(x, at, dim));
+  const first = stepNeed(x, d1, at, dim, inverse);
+  const second = stepNeed(x, d2, at, dim, inverse);
+  const worst = first > second ? first : second;
   return worst * limit > 1 ? 1 / worst : limit;
+}
+
+/** One over the longest step along d; not positive when there is no end to it. */
+function stepNeed(x: Float64Array, d: Float64Array, at: number, dim: number, inverse: number): number {
+  const x0 = x[at] * inverse;
+  if (dim === 3) {
+    const dot3 = (x[at + 1] * d[at + 1] + x[at + 2] * d[at + 2]) * inverse;
+    const head3 = x0 * d[at] - dot3;
+    const turn3 = ((head3 + d[at]) / (x0 + 1)) * inverse;
+    const a = d[at + 1] - turn3 * x[at + 1];
+    const b = d[at + 2] - turn3 * x[at + 2];
+    return (Math.sqrt(a * a + b * b) - head3) * inverse;
+  }
+  let dot = 0;
+  for (let i = 1; i < dim; i++) dot += x[at + i] * d[at + i];
+  dot *= inverse;
+  const head = x0 * d[at] - dot;
+  const turn = ((head + d[at]) / (x0 + 1)) * inverse;
+  let tail = 0;
+  for (let i = 1; i < dim; i++) {
+    const v = d[at + i] - turn * x[at + i];
+    tail += v * v;
+  }
+  return (Math.sqrt(tail) - head) * inverse;
 }
 
 /** How far x is outside one second-order cone: |v| - t, negative inside. */

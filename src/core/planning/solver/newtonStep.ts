@@ -47,6 +47,16 @@ function divideConeRows(
   const inverse = 1 / beta;
   for (let a = from; a < from + columns; a++) {
     const head = m[a];
+    if (dim === 3) {
+      const m1 = m[a + columns];
+      const m2 = m[a + 2 * columns];
+      const dot3 = scale[at + 1] * m1 + scale[at + 2] * m2;
+      const tail3 = inverse * (dot3 / (1 + w0) - head);
+      out[a] = inverse * (w0 * head - dot3);
+      out[a + columns] = inverse * m1 + scale[at + 1] * tail3;
+      out[a + 2 * columns] = inverse * m2 + scale[at + 2] * tail3;
+      continue;
+    }
     let dot = 0;
     for (let i = 1; i < dim; i++) dot += scale[at + i] * m[a + i * columns];
     const tail = inverse * (dot / (1 + w0) - head);
@@ -68,71 +78,63 @@ export function divideByScaling(work: SolverWork, x: Float64Array, out: Float64A
   for (let c = 0; c < coneRow.length; c++) divideCone(scale, beta[c], coneRow[c], coneDim[c], x, out);
 }
 
-/** Moves slack and dual along the scaled step: slack += a W stepSlack, dual += a W^-1 stepDual. */
+/** Moves slack and dual along the scaled step: slack += a W stepSlack, dual += a W^-1 stepDual; spoils the step. */
 export function moveCones(work: SolverWork, a: number): void {
-  const { stages, rows, rowStart, linearRows, coneRow, coneDim } = work.sizes;
+  const { stages, rowStart, linearRows, coneRow, coneDim } = work.sizes;
   const { scale, beta } = work.scaling;
   const { stepSlack, stepDual } = work;
   const { slack, dual } = work.point;
-  for (let c = 0; c < coneRow.length; c++) {
-    multiplyCone(scale, beta[c], coneRow[c], coneDim[c], stepSlack, stepSlack);
-    divideCone(scale, beta[c], coneRow[c], coneDim[c], stepDual, stepDual);
-  }
   for (let k = 0; k <= stages; k++) {
     const end = rowStart[k] + linearRows[k];
     for (let r = rowStart[k]; r < end; r++) {
-      stepSlack[r] *= scale[r];
-      stepDual[r] /= scale[r];
-    }
-  }
-  for (let r = 0; r < rows; r++) {
-    slack[r] += a * stepSlack[r];
-    dual[r] += a * stepDual[r];
-  }
-}
-
-/**
- * scaled \ d of the Jordan product, minus what is asked: the right-hand side of the scaled
- * complementarity row, scaled o (stepSlack + stepDual) = centre e - scaled o scaled - correction.
- *
- * @param centre sigma mu
- * @param out    rows; may be work.correction
- */
-function fillComplementarity(
-  work: SolverWork,
-  centre: number,
-  hasCorrection: boolean,
-  out: Float64Array,
-): void {
-  const { stages, rowStart, linearRows, coneRow, coneDim } = work.sizes;
-  const l = work.scaling.scaled;
-  const q = work.correction;
-  for (let k = 0; k <= stages; k++) {
-    const end = rowStart[k] + linearRows[k];
-    for (let r = rowStart[k]; r < end; r++) {
-      out[r] = (centre - (hasCorrection ? q[r] : 0)) / l[r] - l[r];
+      slack[r] += a * stepSlack[r] * scale[r];
+      dual[r] += (a * stepDual[r]) / scale[r];
     }
   }
   for (let c = 0; c < coneRow.length; c++) {
     const at = coneRow[c];
     const dim = coneDim[c];
-    // arrow system L x = d with d = centre e - correction; the part -scaled o scaled gives -scaled
+    multiplyCone(scale, beta[c], at, dim, stepSlack, stepSlack);
+    divideCone(scale, beta[c], at, dim, stepDual, stepDual);
+    for (let r = at; r < at + dim; r++) {
+      slack[r] += a * stepSlack[r];
+      dual[r] += a * stepDual[r];
+    }
+  }
+}
+
+/**
+ * Right-hand side of the scaled complementarity row, scaled o (stepSlack + stepDual) = d with
+ * d = centre e - scaled o scaled - correction, divided by scaled in the Jordan product.
+ *
+ * @param centre sigma mu
+ * @param out    rows; may not be work.correction
+ */
+function fillComplementarity(work: SolverWork, centre: number, out: Float64Array): void {
+  const { stages, rowStart, linearRows, coneRow, coneDim } = work.sizes;
+  const l = work.scaling.scaled;
+  const q = work.correction;
+  for (let k = 0; k <= stages; k++) {
+    const end = rowStart[k] + linearRows[k];
+    for (let r = rowStart[k]; r < end; r++) out[r] = (centre - q[r]) / l[r] - l[r];
+  }
+  for (let c = 0; c < coneRow.length; c++) {
+    const at = coneRow[c];
+    const dim = coneDim[c];
+    // arrow system of centre e - correction; the part -scaled o scaled divides to -scaled
     const l0 = l[at];
-    let tail2 = 0;
-    let dot = 0;
-    for (let i = 1; i < dim; i++) {
+    let tail2 = l[at + 1] * l[at + 1];
+    let dot = l[at + 1] * q[at + 1];
+    for (let i = 2; i < dim; i++) {
       tail2 += l[at + i] * l[at + i];
-      if (hasCorrection) dot -= l[at + i] * q[at + i];
+      dot += l[at + i] * q[at + i];
     }
     const tail = Math.sqrt(tail2);
-    const det = (l0 - tail) * (l0 + tail);
-    const d0 = centre - (hasCorrection ? q[at] : 0);
-    const x0 = (l0 * d0 - dot) / det;
-    for (let i = 1; i < dim; i++) {
-      const di = hasCorrection ? -q[at + i] : 0;
-      out[at + i] = (di - x0 * l[at + i]) / l0 - l[at + i];
-    }
+    const x0 = (l0 * (centre - q[at]) + dot) / ((l0 - tail) * (l0 + tail));
+    const inverse = 1 / l0;
     out[at] = x0 - l0;
+    out[at + 1] = -(q[at + 1] + x0 * l[at + 1]) * inverse - l[at + 1];
+    for (let i = 2; i < dim; i++) out[at + i] = -(q[at + i] + x0 * l[at + i]) * inverse - l[at + i];
   }
 }
 
@@ -156,7 +158,8 @@ export function fillCorrection(work: SolverWork): void {
 }
 
 /**
- * One Newton step towards complementarity `centre`, from the residuals in the work space.
+ * One Newton step from the residuals in the work space: towards the boundary (the predictor), or with
+ * hasCorrection towards complementarity `centre` with Mehrotra's second-order term (the corrector).
  *
  * Leaves stepZ, stepDynamics, stepBorder, and stepSlack, stepDual in scaled space.
  * O(N width^2 + rows width), allocates nothing.
@@ -169,9 +172,17 @@ export function solveNewton(
 ): void {
   const { sizes, packed, right, rightBorder, rowRight, stepSlack, stepDual } = work;
   const { rows } = sizes;
-  fillComplementarity(work, centre, hasCorrection, stepSlack);
   divideByScaling(work, work.rowResidual, rowRight);
-  for (let r = 0; r < rows; r++) rowRight[r] += stepSlack[r];
+  if (hasCorrection) {
+    fillComplementarity(work, centre, stepSlack);
+    for (let r = 0; r < rows; r++) rowRight[r] += stepSlack[r];
+  } else {
+    const l = work.scaling.scaled;
+    for (let r = 0; r < rows; r++) {
+      stepSlack[r] = -l[r];
+      rowRight[r] -= l[r];
+    }
+  }
   right.set(work.gradient);
   rightBorder.set(work.borderGradient);
   addRowsTransposed(sizes, packed, packed.scaled, work.scaledShared, rowRight, right, rightBorder);
