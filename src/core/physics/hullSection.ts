@@ -1,4 +1,5 @@
 import type { HullBody, Section } from '../rig';
+import { formatQuantity } from '../units';
 
 /**
  * A cross-section of a hull as closed polygons in body axes: y to the left, z up, z = 0 at the keel line of the
@@ -18,8 +19,11 @@ export interface HullSection {
 }
 
 export interface SectionFault {
+  /** Within the body, such as `section.deadrise`. */
   readonly field: string;
+  /** SI. */
   readonly value: number;
+  readonly dimension: 'length' | 'angle';
   readonly allowed: string;
 }
 
@@ -109,20 +113,23 @@ function sectionFaults(hull: HullBody): SectionFault[] {
   const { section, keel, length } = hull;
   const faults: SectionFault[] = [];
   if (section.kind === 'deadrise') {
+    const { deadrise: value } = section;
     const steepest = Math.atan(section.depth / (section.beam / 2));
-    if (!(section.deadrise < steepest)) {
-      const allowed = `less than ${steepest} rad, or the chine stands above the deck`;
-      faults.push({ field: 'body.section.deadrise', value: section.deadrise, allowed });
+    if (!(value < steepest)) {
+      const allowed = `less than ${formatQuantity(steepest, 'angle')}, or the chine stands above the deck`;
+      faults.push({ field: 'section.deadrise', value, dimension: 'angle', allowed });
     }
   } else {
+    const { bilgeRadius: value } = section;
     const largest = Math.min(section.beam / 2, section.depth);
-    if (!(section.bilgeRadius <= largest)) {
-      const allowed = `at most ${largest} m, the smaller of half the beam and the depth`;
-      faults.push({ field: 'body.section.bilgeRadius', value: section.bilgeRadius, allowed });
+    if (!(value <= largest)) {
+      const allowed = `at most ${formatQuantity(largest, 'length')}, the smaller of half the beam and the depth`;
+      faults.push({ field: 'section.bilgeRadius', value, dimension: 'length', allowed });
     }
   }
   if (keel.kind === 'fin' && !(keel.length <= length)) {
-    faults.push({ field: 'body.keel.length', value: keel.length, allowed: `at most the hull's ${length} m` });
+    const allowed = `at most the hull's ${formatQuantity(length, 'length')}`;
+    faults.push({ field: 'keel.length', value: keel.length, dimension: 'length', allowed });
   }
   return faults;
 }

@@ -1,4 +1,5 @@
 import { MATERIALS, type WheelPart } from '../rig';
+import { formatQuantity } from '../units';
 import type { FormulaNotes } from './formula';
 
 /** kg/m^3; bolts are given by mass, their volume is that of steel. */
@@ -32,9 +33,10 @@ export interface WheelProperties {
   readonly parts: readonly PartProperties[];
 }
 
-/** Why a stack cannot be a wheel: the field, what it holds, and what it may hold (SI). */
+/** Why a stack cannot be a wheel: the field, what it holds, and what it may hold. */
 export interface WheelFault {
   readonly field: string;
+  /** A number is a length in m; anything else stands as words. */
   readonly value: number | string;
   readonly allowed: string;
 }
@@ -160,35 +162,36 @@ function faultsOfPart(part: WheelPart, index: number): WheelFault[] {
   const require = (good: boolean, field: string, value: number | string, allowed: string): void => {
     if (!good) faults.push({ field: `parts[${index}].${field}`, value, allowed });
   };
-  require(Number.isFinite(part.offset), 'offset', part.offset, 'a finite length in m');
+  require(Number.isFinite(part.offset), 'offset', part.offset, 'a length');
   const ring = (inner: number, outer: number, innerName: string, outerName: string): void => {
-    require(isPositive(outer), outerName, outer, 'more than 0 m');
-    require(inner >= 0 && inner < outer, innerName, inner, `from 0 to less than ${outer} m`);
+    require(isPositive(outer), outerName, outer, 'more than 0');
+    require(inner >= 0 &&
+      inner < outer, innerName, inner, `from 0 to less than ${formatQuantity(outer, 'length')}`);
   };
   switch (part.kind) {
     case 'disc':
     case 'hub':
       ring(part.bore, part.radius, 'bore', 'radius');
       if (part.kind === 'disc')
-        require(isPositive(part.thickness), 'thickness', part.thickness, 'more than 0 m');
-      else require(isPositive(part.length), 'length', part.length, 'more than 0 m');
+        require(isPositive(part.thickness), 'thickness', part.thickness, 'more than 0');
+      else require(isPositive(part.length), 'length', part.length, 'more than 0');
       break;
     case 'rim':
       ring(part.innerRadius, part.outerRadius, 'innerRadius', 'outerRadius');
-      require(isPositive(part.width), 'width', part.width, 'more than 0 m');
+      require(isPositive(part.width), 'width', part.width, 'more than 0');
       break;
     case 'balls': {
-      require(isRing(part.count), 'count', part.count, 'a whole number, at least 2');
-      require(isPositive(part.pitchRadius), 'pitchRadius', part.pitchRadius, 'more than 0 m');
+      require(isRing(part.count), 'count', String(part.count), 'a whole number, at least 2');
+      require(isPositive(part.pitchRadius), 'pitchRadius', part.pitchRadius, 'more than 0');
       const room = 2 * part.pitchRadius * Math.sin(Math.PI / Math.max(part.count, 2));
       const fits = isPositive(part.diameter) && part.diameter <= room * (1 + 1e-12);
-      require(fits, 'diameter', part.diameter, `more than 0, at most ${room} m, or the balls overlap`);
+      require(fits, 'diameter', part.diameter, `more than 0, at most ${formatQuantity(room, 'length')}, or the balls overlap`);
       break;
     }
     case 'bolts':
-      require(isRing(part.count), 'count', part.count, 'a whole number, at least 2');
-      require(isPositive(part.pitchRadius), 'pitchRadius', part.pitchRadius, 'more than 0 m');
-      require(isPositive(part.mass), 'mass', part.mass, 'more than 0 kg');
+      require(isRing(part.count), 'count', String(part.count), 'a whole number, at least 2');
+      require(isPositive(part.pitchRadius), 'pitchRadius', part.pitchRadius, 'more than 0');
+      require(isPositive(part.mass), 'mass', formatQuantity(part.mass, 'mass'), 'more than 0');
       break;
   }
   return faults;
@@ -205,7 +208,7 @@ function faultsOfPart(part: WheelPart, index: number): WheelFault[] {
  */
 export function wheelProperties(parts: readonly WheelPart[]): WheelPropertiesOutcome {
   const faults = parts.flatMap(faultsOfPart);
-  if (parts.length === 0) faults.push({ field: 'parts', value: 0, allowed: 'at least one part' });
+  if (parts.length === 0) faults.push({ field: 'parts', value: 'none', allowed: 'at least one part' });
   if (faults.length > 0) return { kind: 'refused', faults };
   const properties = parts.map((part) => partProperties(part));
   let mass = 0;

@@ -145,7 +145,7 @@ export function buildRings(parts: readonly WheelPart[]): BuiltWheelOutcome {
   annuli.sort((a, b) => a.inner - b.inner || a.part - b.part);
   const faults: WheelFault[] = [];
   if (annuli.length === 0)
-    faults.push({ field: 'parts', value: parts.length, allowed: 'a disc, a hub or a rim' });
+    faults.push({ field: 'parts', value: 'balls and bolts only', allowed: 'a disc, a hub or a rim as well' });
   const grooves: BuiltWheel['grooves'][number][] = [];
   parts.forEach((part, index) => {
     if (part.kind !== 'balls' && part.kind !== 'bolts') return;

@@ -206,11 +206,11 @@ describe('flotation', () => {
   it('names the field of a section that cannot be drawn', () => {
     expect(hullSection(hullOf({ kind: 'deadrise', beam: 2, depth: 0.3, deadrise: 0.4 }, 3))).toMatchObject({
       kind: 'refused',
-      faults: [{ field: 'body.section.deadrise', value: 0.4 }],
+      faults: [{ field: 'section.deadrise', value: 0.4 }],
     });
     expect(hullSection(hullOf({ kind: 'bilge', beam: 2, depth: 1, bilgeRadius: 1.1 }, 3))).toMatchObject({
       kind: 'refused',
-      faults: [{ field: 'body.section.bilgeRadius' }],
+      faults: [{ field: 'section.bilgeRadius' }],
     });
   });
 });
