@@ -22,6 +22,8 @@ export interface FitOptions {
   /** Widen intervals for correlated residuals; for rows in time order. */
   readonly isTimeSeries?: boolean;
   readonly confidence?: number;
+  /** Numbers eliminated from the residuals beforehand (variable projection), each a degree of freedom less. */
+  readonly eliminated?: number;
 }
 
 export interface Fit {
@@ -311,7 +313,7 @@ function conclude(
   const V = svd.rightSingularVectors;
   const condition = s[0] / s[p - 1];
   const sum = sumSquares(r);
-  const dof = n - p;
+  const dof = n - p - (options.eliminated ?? 0);
   const correlation = options.isTimeSeries ? correlationFactor(r) : 1;
   const variance = dof > 0 ? (sum / dof) * correlation : Number.NaN;
   const t =
