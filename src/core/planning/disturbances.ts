@@ -1,7 +1,7 @@
 /** A run of disturbances over the instants of a plan: moments, forces, gravity's direction, added mass and sudden jumps of momentum. */
 import { STANDARD_GRAVITY } from '../physics';
 import type { Disturbance, InlineBody } from '../rig';
-import { createWaveTrain, type WaveBody, waveMomentAt } from './waveLoad';
+import { createWaveTrain, sampleWaveMoment, type WaveBody } from './waveLoad';
 
 /** What the moments are taken about, and what a disturbance must know of the rig. */
 export interface DisturbanceSetting {
@@ -236,10 +236,17 @@ function addDisturbance(d: Disturbance, index: number, setting: DisturbanceSetti
     case 'waves':
     case 'sea': {
       if (setting.waves === undefined) return;
-      const train = createWaveTrain(d);
-      const body = setting.waves;
+      const first = course.time[0] as number;
+      const moments = new Float64Array(course.nodes);
+      sampleWaveMoment(
+        createWaveTrain(d),
+        setting.waves,
+        first - d.time,
+        (course.time[1] as number) - first,
+        moments,
+      );
       overSpan(d, course, (k, share) => {
-        course.roll[k] += share * waveMomentAt(train, body, (course.time[k] as number) - d.time);
+        course.roll[k] += share * (moments[k] as number);
       });
       return;
     }

@@ -1,7 +1,7 @@
 /** Roll of a floating body in waves step by step in time, its array held to its limits. */
 import { rightingArm } from '../physics';
 import type { RollArray, RollBody, RollFigures } from './seakeeping';
-import { type WaveTrain, waveMomentAt } from './waveLoad';
+import { sampleWaveMoment, type WaveTrain } from './waveLoad';
 
 export interface RollRun extends RollFigures {
   /** s, rad, rad. */
@@ -45,9 +45,8 @@ export function rollInTime(
     roll: new Float64Array(steps + 1),
     tilt: new Float64Array(steps + 1),
   };
-  const moments = Float64Array.from({ length: 2 * steps + 1 }, (_, i) =>
-    waveMomentAt(train, body.waves, (i * h) / 2),
-  );
+  const moments = new Float64Array(2 * steps + 1);
+  sampleWaveMoment(train, body.waves, 0, h / 2, moments);
   const y = new Float64Array(3);
   const work = [0, 1, 2, 3, 4].map(() => new Float64Array(3));
   const rates = new Float64Array(3);

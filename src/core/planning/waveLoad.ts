@@ -158,3 +158,46 @@ export function waveMomentAt(train: WaveTrain, body: WaveBody, time: number): nu
   }
   return body.stiffness * Math.sin(train.heading) * sum;
 }
+
+/** Samples after which the turning of phasors starts again from sine and cosine, so that rounding does not grow. */
+const FRESH_START = 256;
+
+/**
+ * Roll moment of the waves at evenly spaced instants, N*m: `waveMomentAt` many times over, by turning phasors.
+ *
+ * @param start  s into the train of the first instant
+ * @param step   s
+ * @param out    filled
+ *
+ * O(samples x components) of a few products each; within 1e-12 of the largest moment.
+ */
+export function sampleWaveMoment(
+  train: WaveTrain,
+  body: WaveBody,
+  start: number,
+  step: number,
+  out: Float64Array,
+): void {
+  out.fill(0);
+  const across = body.stiffness * Math.sin(train.heading);
+  for (let i = 0; i < train.components; i++) {
+    const k = train.wavenumber[i];
+    const size = across * effectiveSlopeShare(body, k, train.heading) * k * train.amplitude[i];
+    const w = train.encounter[i];
+    const turnCos = Math.cos(w * step);
+    const turnSin = Math.sin(w * step);
+    let c = 0;
+    let s = 0;
+    for (let j = 0; j < out.length; j++) {
+      if (j % FRESH_START === 0) {
+        const angle = w * (start + j * step) - train.phase[i];
+        c = Math.cos(angle);
+        s = Math.sin(angle);
+      }
+      out[j] += size * s;
+      const next = c * turnCos - s * turnSin;
+      s = s * turnCos + c * turnSin;
+      c = next;
+    }
+  }
+}
