@@ -167,7 +167,7 @@ function dropHidden(loop: LoopModel, a: Matrix, p: SampledPlant, extra: number, 
     if (stays) {
       v[1] = loop.plant.momentum / loop.plant.inertia;
       if (p.plantStates === 3) v[2] = 1;
-      for (let i = p.plantStates; i < p.A.rows; i++) v[i] = 1;
+      for (let i = 0; i < p.pastCommands; i++) v[p.plantStates + i] = 1;
       j = p.plantStates;
       if (loop.law === 'pidTilt') v[extra] = 1 / g[1]!;
     }
@@ -283,16 +283,25 @@ function respondPlant(
     xIm[i] = older * oldIm + newer * newIm;
   }
   solveResolvent(p.transition, zRe, zIm, xRe, xIm, 1, work);
-  for (let o = 0; o < 4; o++) {
+  for (let o = 0; o < 3; o++) {
     let re = p.D0.get(o, 0) * oldRe;
     let im = p.D0.get(o, 0) * oldIm;
     for (let j = 0; j < n; j++) {
       re += p.C0.get(o, j) * xRe[j]!;
       im += p.C0.get(o, j) * xIm[j]!;
     }
-    yRe[o] = re;
-    yIm[o] = im;
+    const row = o === 2 ? PLANT_OUTPUT.store : o;
+    yRe[row] = re;
+    yIm[row] = im;
   }
+  /* apparent roll = roll - perRate (1 - 1/z) rate */
+  const rate = PLANT_OUTPUT.rollRate;
+  const backRe = 1 - Math.cos(theta) / radius;
+  const backIm = Math.sin(theta) / radius;
+  yRe[PLANT_OUTPUT.apparentRoll] =
+    yRe[PLANT_OUTPUT.roll]! - p.perRate * (backRe * yRe[rate]! - backIm * yIm[rate]!);
+  yIm[PLANT_OUTPUT.apparentRoll] =
+    yIm[PLANT_OUTPUT.roll]! - p.perRate * (backRe * yIm[rate]! + backIm * yRe[rate]!);
 }
 
 function respondEstimator(

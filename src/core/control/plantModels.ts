@@ -31,7 +31,7 @@ export interface RollTiltPlant {
   readonly gravity: number;
 }
 
-/** dx/dt = A x + B u, y = C x + D u with u the tilt command, the delay left out. */
+/** dx/dt = A x + B u, y = C x + D u with u the command, the delay left out; y is roll, roll rate and store. */
 export interface StateSpace {
   readonly A: Matrix;
   readonly B: Matrix;
@@ -39,13 +39,16 @@ export interface StateSpace {
   readonly D: Matrix;
 }
 
-/** Rows of the plant's output. */
+/** Rows of the sampled plant's output. */
 export const PLANT_OUTPUT = {
   /** rad */
   roll: 0,
   /** rad/s */
   rollRate: 1,
-  /** rad, roll as an accelerometer at the sensor's height shows it: roll - height / gravity * roll acceleration */
+  /**
+   * rad, roll as an accelerometer at the sensor's height shows it: roll - height / gravity * roll acceleration,
+   * the acceleration averaged over the last sample, as the filter inside such a sensor does
+   */
   apparentRoll: 2,
   /** rad of tilt, or N*m*s of reaction wheel momentum */
   store: 3,
@@ -61,8 +64,7 @@ export function buildPlant(plant: RollTiltPlant): StateSpace {
   const a = plant.stiffness / plant.inertia;
   const d = plant.damping / plant.inertia;
   const g = plant.momentum / plant.inertia;
-  const z = plant.gravity > 0 ? plant.sensorHeight / plant.gravity : 0;
-  if (plant.actuator === 'wheelTorque') return buildWheelPlant(plant, a, d, z);
+  if (plant.actuator === 'wheelTorque') return buildWheelPlant(plant, a, d);
   if (plant.servoLag > 0) {
     const w = 1 / plant.servoLag;
     return {
@@ -72,14 +74,12 @@ export function buildPlant(plant: RollTiltPlant): StateSpace {
         [0, 0, -w],
       ]),
       B: new Matrix([[0], [0], [w]]),
-      /* roll acceleration = a roll - d rate - g (u - tilt) w */
       C: new Matrix([
         [1, 0, 0],
         [0, 1, -g],
-        [1 - z * a, z * d, -z * (d * g + g * w)],
         [0, 0, 1],
       ]),
-      D: new Matrix([[0], [0], [z * g * w], [0]]),
+      D: Matrix.zeros(3, 1),
     };
   }
   return {
@@ -91,15 +91,14 @@ export function buildPlant(plant: RollTiltPlant): StateSpace {
     C: new Matrix([
       [1, 0],
       [0, 1],
-      [1 - z * a, z * d],
       [0, 0],
     ]),
-    D: new Matrix([[0], [-g], [-z * d * g], [1]]),
+    D: new Matrix([[0], [-g], [1]]),
   };
 }
 
 /* Roll, roll rate, wheel momentum, and the motor's torque if it lags. */
-function buildWheelPlant(plant: RollTiltPlant, a: number, d: number, z: number): StateSpace {
+function buildWheelPlant(plant: RollTiltPlant, a: number, d: number): StateSpace {
   const per = 1 / plant.inertia;
   if (plant.servoLag > 0) {
     const w = 1 / plant.servoLag;
@@ -114,10 +113,9 @@ function buildWheelPlant(plant: RollTiltPlant, a: number, d: number, z: number):
       C: new Matrix([
         [1, 0, 0, 0],
         [0, 1, 0, 0],
-        [1 - z * a, z * d, 0, z * per],
         [0, 0, 1, 0],
       ]),
-      D: Matrix.zeros(4, 1),
+      D: Matrix.zeros(3, 1),
     };
   }
   return {
@@ -130,10 +128,9 @@ function buildWheelPlant(plant: RollTiltPlant, a: number, d: number, z: number):
     C: new Matrix([
       [1, 0, 0],
       [0, 1, 0],
-      [1 - z * a, z * d, 0],
       [0, 0, 1],
     ]),
-    D: new Matrix([[0], [0], [z * per], [0]]),
+    D: Matrix.zeros(3, 1),
   };
 }
 
@@ -142,10 +139,12 @@ export interface SampledPlant {
   readonly A: Matrix;
   readonly B: Matrix;
   readonly C: Matrix;
-  /** states of the plant proper; the rest are past commands, newest first */
+  /** states of the plant proper; then past commands, newest first; then, with a sensor off the roll line, the last roll rate */
   readonly plantStates: number;
   readonly pastCommands: number;
   readonly sampleTime: number;
+  /** rad of apparent roll for each rad/s that the roll rate changed over the last sample */
+  readonly perRate: number;
   /** the pieces, for frequency response: transition, effect of the older and of the newer command of a sample */
   readonly transition: Matrix;
   readonly olderInput: Matrix;
@@ -173,17 +172,32 @@ export function samplePlant(plant: RollTiltPlant): SampledPlant {
   const olderInput = rest.transition.mmul(early.input);
   const n = A.rows;
   const past = whole + 1;
-  const a = Matrix.zeros(n + past, n + past);
-  const b = Matrix.zeros(n + past, 1);
+  const isHigh = plant.sensorHeight !== 0;
+  const size = n + past + (isHigh ? 1 : 0);
+  const a = Matrix.zeros(size, size);
+  const b = Matrix.zeros(size, 1);
   a.setSubMatrix(full.transition, 0, 0);
   a.setSubMatrix(olderInput, 0, n + past - 1);
   if (whole === 0) b.setSubMatrix(rest.input, 0, 0);
   else a.setSubMatrix(rest.input, 0, n + whole - 1);
   b.set(n, 0, 1);
   for (let i = 1; i < past; i++) a.set(n + i, n + i - 1, 1);
-  const c = Matrix.zeros(C.rows, n + past);
-  c.setSubMatrix(C, 0, 0);
-  for (let i = 0; i < C.rows; i++) c.set(i, n + past - 1, D.get(i, 0));
+  const c = Matrix.zeros(4, size);
+  const rows = [PLANT_OUTPUT.roll, PLANT_OUTPUT.rollRate, PLANT_OUTPUT.store];
+  rows.forEach((row, i) => {
+    for (let j = 0; j < n; j++) c.set(row, j, C.get(i, j));
+    c.set(row, n + past - 1, D.get(i, 0));
+  });
+  const perRate = plant.gravity > 0 ? plant.sensorHeight / (plant.gravity * dt) : 0;
+  for (let j = 0; j < size; j++) {
+    c.set(
+      PLANT_OUTPUT.apparentRoll,
+      j,
+      c.get(PLANT_OUTPUT.roll, j) - perRate * c.get(PLANT_OUTPUT.rollRate, j),
+    );
+    if (isHigh) a.set(size - 1, j, c.get(PLANT_OUTPUT.rollRate, j));
+  }
+  if (isHigh) c.set(PLANT_OUTPUT.apparentRoll, size - 1, perRate);
   return {
     A: a,
     B: b,
@@ -191,6 +205,7 @@ export function samplePlant(plant: RollTiltPlant): SampledPlant {
     plantStates: n,
     pastCommands: past,
     sampleTime: dt,
+    perRate,
     transition: full.transition,
     olderInput,
     newerInput: rest.input,

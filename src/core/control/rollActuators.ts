@@ -66,7 +66,7 @@ export type RollActuator =
     };
 
 /** Where the body's quantities stand. */
-export const BODY = { roll: 0, rate: 1, acceleration: 2 } as const;
+export const BODY = { roll: 0, rate: 1 } as const;
 
 export interface ActuatorWork {
   readonly servos: readonly ServoWork[];
@@ -126,7 +126,7 @@ export function resetActuator(actuator: RollActuator, w: ActuatorWork, tilt: num
 /**
  * One plant step: gimbals or wheel and the body's roll together.
  *
- * @param body roll, rate, acceleration; changed in place
+ * @param body roll, rate; changed in place
  * @param moment N*m on the body at the middle of the step, damping left out
  *
  * Momentum passes between array and body exactly: the body gets minus the change of h sin(tilt).
@@ -151,7 +151,6 @@ function moveBody(body: Float64Array, inertia: number, damping: number, impulse:
   const after = ((inertia - half) * before + impulse) / (inertia + half);
   body[BODY.rate] = after;
   body[BODY.roll]! += 0.5 * dt * (before + after);
-  body[BODY.acceleration] = (after - before) / dt;
 }
 
 function advanceServos(
@@ -229,7 +228,6 @@ function advanceFree(
   w.rate[0] = nextQ;
   body[BODY.rate] = nextRate;
   body[BODY.roll]! += 0.5 * dt * (p + nextRate);
-  body[BODY.acceleration] = (nextRate - p) / dt;
 }
 
 /* Torque within controller limit and motor line; the wheel stores what the body is given, with opposite sign. */

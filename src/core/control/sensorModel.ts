@@ -155,7 +155,8 @@ export function resetSensor(model: SensorModel, work: SensorWork): void {
  * roll line reads nothing at the height g sin(roll) / roll acceleration. Noise and shaking are put on the
  * lateral axis alone: on the vertical one they enter the angle at second order.
  *
- * @param roll,rollRate,rollAcceleration rad, rad/s, rad/s^2, true
+ * @param roll,rollRate rad, rad/s, true, at the sample
+ * @param rollAcceleration rad/s^2, mean since the last sample: the filter inside the sensor
  * @param time s, for the vibration's phase; sampling it is what folds it into the loop
  *
  * O(1), allocates nothing.
