@@ -1,0 +1,134 @@
+import { OrbitControls } from '@react-three/drei';
+import { useFrame, useThree } from '@react-three/fiber';
+import { useCallback, useEffect, useRef } from 'react';
+import { type PerspectiveCamera, Vector3 } from 'three';
+import { useSession } from '../state/session';
+import { type Box, boxCentre, type Point } from './bodyPlaces';
+import { eyeDirection, frameDistance, freeArea, type View } from './framing';
+import { useStage } from './stageFrame';
+
+/** The part of the controls that framing needs; drei's type is of a package of its own. */
+interface Controls {
+  readonly target: Vector3;
+  readonly update: () => void;
+  minDistance: number;
+  maxDistance: number;
+}
+
+/** Turns stage axes (z up) into the renderer's (y up), as the adapter group does for all that is drawn. */
+const toRenderer = ([x, y, z]: Point, out: Vector3): Vector3 => out.set(x, z, -y);
+
+export const FIELD_OF_VIEW = 30;
+const DEGREE = Math.PI / 180;
+
+/** A body may go this share of its size from the middle of the picture before the eye goes along. */
+const LEASH = 0.16;
+
+/** A rig that has grown or shrunk by more than this is framed anew. */
+const RESIZE = 1.7;
+
+export interface ViewAsk {
+  readonly view: View | 'frame';
+  /** Counts the asks, so that the same button can be pressed twice. */
+  readonly count: number;
+}
+
+const moved = (box: Box, pose: ArrayLike<number>): Box => ({
+  min: [box.min[0] + pose[0], box.min[1] + pose[1], box.min[2] + pose[2]],
+  max: [box.max[0] + pose[0], box.max[1] + pose[1], box.max[2] + pose[2]],
+});
+
+const work = new Vector3();
+
+/** The eye: framed on load and when asked, moved by hand between, and led along when the body walks away. */
+export function Viewpoint({ ask }: { readonly ask: ViewAsk }) {
+  const { box, size, frame, rig } = useStage();
+  const camera = useThree((state) => state.camera) as PerspectiveCamera;
+  const controls = useThree((state) => state.controls) as unknown as Controls | null;
+  const viewport = useThree((state) => state.size);
+  const invalidate = useThree((state) => state.invalidate);
+  const insets = useSession((state) => state.stageInsets);
+  const isTouched = useRef(false);
+  const framedSize = useRef(0);
+  const framedKind = useRef('');
+
+  const look = useCallback(
+    (eye: Point): void => {
+      if (!controls || viewport.width === 0) return;
+      const place = moved(box, frame.instant.pose);
+      const picture = { width: viewport.width, height: viewport.height, insets };
+      const distance = frameDistance(place, eye, FIELD_OF_VIEW * DEGREE, picture);
+      toRenderer(boxCentre(place), controls.target);
+      camera.position.copy(controls.target).addScaledVector(toRenderer(eye, work), distance);
+      camera.near = distance / 60;
+      camera.far = distance + 30 * size;
+      camera.updateProjectionMatrix();
+      controls.minDistance = 0.15 * size;
+      controls.maxDistance = 12 * size;
+      controls.update();
+      invalidate();
+    },
+    [box, camera, controls, frame, insets, invalidate, size, viewport],
+  );
+
+  // The middle of the picture is moved to the middle of what nothing lies over.
+  useEffect(() => {
+    const { width, height } = viewport;
+    if (width === 0) return;
+    const free = freeArea({ width, height, insets });
+    camera.setViewOffset(width, height, -free.right, -free.down, width, height);
+    invalidate();
+  }, [camera, insets, invalidate, viewport]);
+
+  // Framed on load, when the room changes before the eye was moved by hand, and when the rig is another.
+  useEffect(() => {
+    const ratio = framedSize.current > 0 ? size / framedSize.current : Number.POSITIVE_INFINITY;
+    const isAnother = rig.body.kind !== framedKind.current || ratio > RESIZE || ratio < 1 / RESIZE;
+    if (!controls || (!isAnother && isTouched.current)) return;
+    if (isAnother) isTouched.current = false;
+    if (isAnother || framedSize.current > 0) look(eyeDirection('corner'));
+    framedSize.current = size;
+    framedKind.current = rig.body.kind;
+  }, [controls, look, rig.body.kind, size]);
+
+  const lookNow = useRef(look);
+  lookNow.current = look;
+  useEffect(() => {
+    if (ask.count === 0 || !controls) return;
+    if (ask.view !== 'frame') {
+      isTouched.current = ask.view !== 'corner';
+      lookNow.current(eyeDirection(ask.view));
+      return;
+    }
+    // Framing keeps the side the rig is looked at from.
+    work.copy(camera.position).sub(controls.target).normalize();
+    lookNow.current([work.x, -work.z, work.y]);
+  }, [ask, camera, controls]);
+
+  useFrame(() => {
+    if (!controls) return;
+    const [x, y] = frame.instant.pose;
+    const [cx, cy] = boxCentre(box);
+    const dx = x + cx - controls.target.x;
+    const dy = y + cy + controls.target.z;
+    const far = Math.hypot(dx, dy);
+    // A view panned away by hand is left where it was put.
+    if (isTouched.current || far <= LEASH * size) return;
+    const share = (far - LEASH * size) / far;
+    work.set(dx * share, 0, -dy * share);
+    controls.target.add(work);
+    camera.position.add(work);
+    controls.update();
+  }, -0.5);
+
+  return (
+    <OrbitControls
+      makeDefault
+      enableDamping={false}
+      zoomSpeed={0.8}
+      onStart={() => {
+        isTouched.current = true;
+      }}
+    />
+  );
+}

@@ -1,0 +1,2 @@
+export { captureStage } from './captureStage';
+export { Stage } from './Stage';
