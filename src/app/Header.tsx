@@ -1,4 +1,4 @@
-import { useState } from 'react';
+import { useEffect, useRef, useState } from 'react';
 import { FilesDialog } from './files/FilesDialog';
 import { useInstall } from './install/installPrompt';
 import { SettingsDialog } from './sheet/SettingsDialog';
@@ -39,8 +39,13 @@ function Stations() {
   const goTo = useSession((session) => session.goTo);
   const rig = useDocument((document) => document.rig);
   const shown = useShown();
+  const nav = useRef<HTMLElement>(null);
+  // biome-ignore lint/correctness/useExhaustiveDependencies: the word to be seen is that of the station
+  useEffect(() => {
+    nav.current?.querySelector('[aria-current]')?.scrollIntoView({ block: 'nearest', inline: 'center' });
+  }, [station]);
   return (
-    <nav className="stations" aria-label="Stations">
+    <nav className="stations" aria-label="Stations" ref={nav}>
       {STATION_WORDS.map(({ id, word }) => {
         const built = findStation(id);
         const mark = built ? built.mark(shown, rig) : 'notYet';

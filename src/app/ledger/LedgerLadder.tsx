@@ -1,5 +1,5 @@
 import { type LedgerLine, tightest } from '../../core/planning';
-import { formatQuantity } from '../../core/units';
+import { showQuantity } from '../sheet/showFigure';
 import { useShown } from '../state/reading';
 import { useSession } from '../state/session';
 import { stream } from '../state/stream';
@@ -28,8 +28,8 @@ export function toggleLine(line: LedgerLine): void {
 function Rung({ line }: { readonly line: LedgerLine }) {
   const isOpen = useSession((session) => session.openedLine === line.name);
   const askSymbol = useSession((session) => session.units[line.ask.dimension]);
-  const ask = formatQuantity(line.ask.value, line.ask.dimension, askSymbol);
-  const have = formatQuantity(line.have.value, line.have.dimension, askSymbol);
+  const ask = showQuantity(line.ask.value, line.ask.dimension, askSymbol);
+  const have = showQuantity(line.have.value, line.have.dimension, askSymbol);
   return (
     <li>
       <button

@@ -1,5 +1,5 @@
-import { formatQuantity } from '../../core/units';
 import { FigureGrounds } from '../sheet/FigureRow';
+import { showQuantity } from '../sheet/showFigure';
 import { useShown } from '../state/reading';
 import { useSession } from '../state/session';
 import { fails, spareWords } from './ledgerMarks';
@@ -25,13 +25,13 @@ export function OpenedLine() {
       </header>
       <p className="opened-spare">
         {fails(line) && <b className="word-fails">Fails</b>} {spareWords(line.spare)}
-        {line.at !== undefined && <span> · tightest at {formatQuantity(line.at, 'time', units.time)}</span>}
+        {line.at !== undefined && <span> · tightest at {showQuantity(line.at, 'time', units.time)}</span>}
       </p>
       {[line.ask, line.have].map((figure, index) => (
         <div key={figure.id} className="opened-side">
           <h4>
             <span>{index === 0 ? 'Ask' : 'Have'}</span>
-            <b>{formatQuantity(figure.value, figure.dimension, units[figure.dimension], 4)}</b>
+            <b>{showQuantity(figure.value, figure.dimension, units[figure.dimension], 4)}</b>
           </h4>
           <p>{figure.label}</p>
           <FigureGrounds figure={figure} />

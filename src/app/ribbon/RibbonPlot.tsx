@@ -10,8 +10,8 @@ import { drawLimits } from './drawLimits';
 import { indexAt, type RibbonPlotData } from './ribbonCurves';
 
 /** CSS pixels at the left of every plot for its scale, and at the right so that the last number is not cut. */
-export const GUTTER_LEFT = 46;
-export const GUTTER_RIGHT = 10;
+const GUTTER_LEFT = 46;
+const GUTTER_RIGHT = 18;
 
 interface RibbonPlotProps {
   readonly data: RibbonPlotData;
@@ -60,7 +60,7 @@ function optionsFor(
         ...axis,
         size: GUTTER_LEFT,
         gap: 4,
-        space: 26,
+        space: 18,
         grid: { stroke: page.line, width: 1 },
         values: (_, ticks) => ticks.map((tick) => (tick < 0 ? `−${-tick}` : String(tick))),
       },

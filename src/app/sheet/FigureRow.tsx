@@ -1,6 +1,7 @@
 import { useId, useState } from 'react';
-import { type Figure, formatQuantity } from '../../core/units';
+import type { Figure } from '../../core/units';
 import { useSession } from '../state/session';
+import { showQuantity } from './showFigure';
 
 /** Formula, inputs and source of a figure. */
 export function FigureGrounds({ figure }: { readonly figure: Figure }) {
@@ -13,7 +14,7 @@ export function FigureGrounds({ figure }: { readonly figure: Figure }) {
           {figure.inputs.map((input) => (
             <div key={input.label}>
               <dt>{input.label}</dt>
-              <dd>{formatQuantity(input.value, input.dimension, units[input.dimension], 4)}</dd>
+              <dd>{showQuantity(input.value, input.dimension, units[input.dimension], 4)}</dd>
             </div>
           ))}
         </dl>
@@ -32,7 +33,7 @@ export function FigureRow({ figure }: { readonly figure: Figure }) {
     <div className="figure">
       <button type="button" aria-expanded={isOpen} aria-controls={id} onClick={() => setOpen(!isOpen)}>
         <span>{figure.label}</span>
-        <b>{formatQuantity(figure.value, figure.dimension, symbol, 4)}</b>
+        <b>{showQuantity(figure.value, figure.dimension, symbol, 4)}</b>
       </button>
       <div id={id} hidden={!isOpen}>
         {isOpen && <FigureGrounds figure={figure} />}

@@ -1,6 +1,6 @@
-import { formatQuantity } from '../../core/units';
 import { useShown } from '../state/reading';
 import { useSession } from '../state/session';
+import { showQuantity } from './showFigure';
 
 /** Mass, centre, inertia and momentum in four boxes: what every edit is made for, always in sight. */
 export function KeyFigures() {
@@ -8,13 +8,13 @@ export function KeyFigures() {
   const units = useSession((session) => session.units);
   if (!shown) return null;
   const [x, y, z] = shown.centreOfMass;
-  const length = (value: number): string => formatQuantity(value, 'length', units.length);
+  const length = (value: number): string => showQuantity(value, 'length', units.length);
   const momentum = shown.ledger.lines.find((line) => line.name === 'momentum')?.have;
   return (
     <dl className="key-figures">
       <div>
         <dt>Mass</dt>
-        <dd>{formatQuantity(shown.mass, 'mass', units.mass, 4)}</dd>
+        <dd>{showQuantity(shown.mass, 'mass', units.mass, 4)}</dd>
       </div>
       <div>
         <dt>Centre, up</dt>
@@ -25,12 +25,12 @@ export function KeyFigures() {
       </div>
       <div>
         <dt>Roll inertia</dt>
-        <dd>{formatQuantity(shown.inertia[0] ?? Number.NaN, 'inertia', units.inertia)}</dd>
+        <dd>{showQuantity(shown.inertia[0] ?? Number.NaN, 'inertia', units.inertia)}</dd>
         <dd className="aside">about the centre</dd>
       </div>
       <div>
         <dt>Momentum to give</dt>
-        <dd>{momentum ? formatQuantity(momentum.value, 'angularMomentum', units.angularMomentum) : '–'}</dd>
+        <dd>{momentum ? showQuantity(momentum.value, 'angularMomentum', units.angularMomentum) : '–'}</dd>
         <dd className="aside">within the tilt limits</dd>
       </div>
     </dl>

@@ -1,6 +1,7 @@
 /** Keeps the stream's evaluation in step with the document and the switches. */
 import type { Rig } from '../../core/rig';
-import type { Switches } from '../../core/trial';
+import type { Evaluation, Switches } from '../../core/trial';
+import { setCures } from './cures';
 import { useDocument } from './document';
 import type { Evaluator } from './evaluator';
 import { useNotices } from './notices';
@@ -9,6 +10,9 @@ import { stream } from './stream';
 
 /** Name of the performance measure from an edit to its redrawn plan. */
 export const EDIT_TO_REDRAW = 'edit to redrawn plan';
+
+/** ms a rig must have been left alone before cures are looked for: a drag would only throw them away. */
+const REST_BEFORE_CURES = 250;
 
 interface Question {
   readonly rig: Rig;
@@ -27,6 +31,7 @@ export function startEvaluating(evaluator: Evaluator): () => void {
   let asked: Question | undefined;
   let next: Question | undefined;
   let hasStopped = false;
+  const cures = createCureSearch(evaluator);
 
   const ask = async (question: Question): Promise<void> => {
     asked = question;
@@ -34,6 +39,7 @@ export function startEvaluating(evaluator: Evaluator): () => void {
       const evaluation = await evaluator.evaluate(question.rig, question.switches);
       if (hasStopped) return;
       stream.setEvaluation(evaluation);
+      if (!next) cures.consider(question.rig, evaluation);
       measureRedraw(question.since);
     } catch (error) {
       const reason = error instanceof Error ? error.message : String(error);
@@ -59,6 +65,7 @@ export function startEvaluating(evaluator: Evaluator): () => void {
     };
     const newest = next ?? asked;
     if (newest && newest.rig === question.rig && newest.switches === question.switches) return;
+    if (newest?.rig !== question.rig) cures.drop();
     if (asked) next = question;
     else void ask(question);
   };
@@ -68,9 +75,43 @@ export function startEvaluating(evaluator: Evaluator): () => void {
   consider();
   return () => {
     hasStopped = true;
+    cures.drop();
     stopDocument();
     stopSession();
   };
+}
+
+/** Looks for cures of an impossible plan, one search at a time, and gives up the search when the rig changes. */
+function createCureSearch(evaluator: Evaluator) {
+  let timer: ReturnType<typeof setTimeout> | undefined;
+  /** The rig that is searched for, or has been. */
+  let subject: Rig | undefined;
+
+  const drop = (): void => {
+    clearTimeout(timer);
+    if (subject) evaluator.stopCures();
+    subject = undefined;
+    setCures({ kind: 'none' });
+  };
+  const search = async (rig: Rig): Promise<void> => {
+    try {
+      const found = await evaluator.findCures(rig);
+      if (subject === rig) setCures({ kind: 'found', rig, cures: found });
+    } catch {
+      // Without cures the sentence of what forbids the plan still stands.
+      if (subject === rig) setCures({ kind: 'none' });
+    }
+  };
+  const consider = (rig: Rig, evaluation: Evaluation): void => {
+    const isImpossible = evaluation.kind === 'evaluated' && evaluation.plan.kind === 'impossible';
+    if (isImpossible && subject === rig) return;
+    drop();
+    if (!isImpossible) return;
+    subject = rig;
+    setCures({ kind: 'searching' });
+    timer = setTimeout(() => void search(rig), REST_BEFORE_CURES);
+  };
+  return { consider, drop };
 }
 
 /** The redraw is done at the end of the frame in which the evaluation came. */

@@ -1,7 +1,4 @@
-import type { Rig } from '../../core/rig';
-import type { Evaluation, Switches } from '../../core/trial';
+import type { Evaluator as WorkerEvaluator } from '../../workers';
 
-/** Whoever answers what a rig comes to: the worker in the app, a plain call in a test. */
-export interface Evaluator {
-  readonly evaluate: (rig: Rig, switches: Switches) => Promise<Evaluation>;
-}
+/** Whoever answers what a rig comes to: the workers in the app, plain calls in a test. */
+export type Evaluator = Pick<WorkerEvaluator, 'evaluate' | 'findCures' | 'stopCures'>;

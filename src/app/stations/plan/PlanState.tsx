@@ -1,4 +1,4 @@
-import type { Cure } from '../../../core/trial';
+import { useCures } from '../../state/cures';
 import { useDocument } from '../../state/document';
 import { useShown } from '../../state/reading';
 import { exportSchedule } from './exportSchedule';
@@ -36,7 +36,7 @@ export function PlanState() {
           </h3>
           <p>{plan.sentence}</p>
           {fall}
-          <Cures cures={plan.cures} />
+          <Cures />
         </div>
       );
     case 'unplanned':
@@ -50,18 +50,24 @@ export function PlanState() {
   }
 }
 
-function Cures({ cures }: { readonly cures: readonly Cure[] }) {
+function Cures() {
+  const state = useCures((cures) => cures.state);
   const edit = useDocument((document) => document.edit);
-  if (cures.length === 0)
+  const isReadOnly = useDocument((document) => document.isReadOnly);
+  if (state.kind === 'none') return null;
+  if (state.kind === 'searching') return <p className="waiting">Looking for what would cure it…</p>;
+  if (state.cures.length === 0) {
     return <p>No single change within the allowed ranges was found that would cure it.</p>;
+  }
   return (
     <div className="cures">
-      <p>Any one of these would do:</p>
-      {cures.map((cure) => (
+      <p>{state.cures.length === 1 ? 'This would do:' : 'Any one of these would do:'}</p>
+      {state.cures.map((cure) => (
         <button
           key={cure.sentence}
           type="button"
           className="wide"
+          disabled={isReadOnly}
           onClick={() => edit(cure.sentence, () => cure.rig)}
         >
           {cure.sentence}

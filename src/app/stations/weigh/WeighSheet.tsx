@@ -1,3 +1,4 @@
+import { formatNumber } from '../../../core/units';
 import { FigureRow } from '../../sheet/FigureRow';
 import { Group } from '../../sheet/Group';
 import { Refusals } from '../../sheet/Refusals';
@@ -19,6 +20,14 @@ export function WeighSheet() {
       {shown && <InertiaTable inertia={shown.inertia} />}
     </>
   );
+}
+
+/** Relative to the greatest element; less is what rounding leaves of a zero. */
+const DUST = 1e-12;
+
+function withoutDust(matrix: readonly number[], place: number): number {
+  const value = matrix[place] ?? Number.NaN;
+  return Math.abs(value) < DUST * Math.max(...matrix.map(Math.abs)) ? 0 : value;
 }
 
 const AXES = ['x', 'y', 'z'] as const;
@@ -44,7 +53,7 @@ function InertiaTable({ inertia }: { readonly inertia: readonly number[] }) {
             <tr key={row}>
               <th scope="row">{row}</th>
               {AXES.map((axis, j) => (
-                <td key={axis}>{(inertia[3 * i + j] ?? Number.NaN).toPrecision(4).replace('-', '−')}</td>
+                <td key={axis}>{formatNumber(withoutDust(inertia, 3 * i + j), 4)}</td>
               ))}
             </tr>
           ))}
