@@ -215,6 +215,7 @@ function boundPressure(k: number, course: GaitCourse, ground: Ground, out: Deman
   const next = (k + 1) % course.nodes;
   // The feet as they stand at either end of the interval: they move back evenly in the walking frame.
   const ends = [k, next].map((node) => {
+    if (isSameFeet(course, node, k)) return out.support[node] as Polygon;
     const centres = feetDown(course, node, course.isFootDownThroughout, k);
     return centres.length > 0
       ? supportPolygon(centres, ground.footLength, ground.footWidth)
@@ -230,6 +231,15 @@ function boundPressure(k: number, course: GaitCourse, ground: Ground, out: Deman
   );
   write(k, across, out.acrossMin, out.acrossMax, out.isPinched);
   write(k, along, out.alongMin, out.alongMax, out.isPinched);
+}
+
+/** Whether the feet down at a node are those that stay down over an interval, so that its outline serves again. */
+function isSameFeet(course: GaitCourse, node: number, interval: number): boolean {
+  for (let leg = 0; leg < course.legs; leg++) {
+    const throughout = course.isFootDownThroughout[interval * course.legs + leg];
+    if (course.isFootDown[node * course.legs + leg] !== throughout) return false;
+  }
+  return true;
 }
 
 type Stretch = readonly [number, number];

@@ -104,7 +104,6 @@ export function pressureInterval(
 ): readonly [number, number] | undefined {
   const count = polygon.length / 2;
   if (count < 3) return undefined;
-  const other = 1 - axis;
   let least = -Infinity;
   let greatest = Infinity;
   for (let i = 0; i < count; i++) {
@@ -113,13 +112,14 @@ export function pressureInterval(
     const dy = (polygon[2 * j + 1] as number) - (polygon[2 * i + 1] as number);
     const length = Math.sqrt(dx * dx + dy * dy);
     // Outward normal of an edge walked anticlockwise.
-    const normal = [dy / length, -dx / length] as const;
+    const nx = dy / length;
+    const ny = -dx / length;
     const reach =
-      normal[0] * (polygon[2 * i] as number) +
-      normal[1] * (polygon[2 * i + 1] as number) -
+      nx * (polygon[2 * i] as number) +
+      ny * (polygon[2 * i + 1] as number) -
       margin -
-      (normal[other] as number) * at;
-    const slope = normal[axis];
+      (axis === 0 ? ny : nx) * at;
+    const slope = axis === 0 ? nx : ny;
     if (slope > 1e-12) greatest = Math.min(greatest, reach / slope);
     else if (slope < -1e-12) least = Math.max(least, reach / slope);
     else if (reach < -1e-12) return undefined;
