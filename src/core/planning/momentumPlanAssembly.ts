@@ -1,4 +1,5 @@
 import { discretiseLean } from './leanStep';
+import { boundControl, type ControlForm, freeControl } from './momentumPlanBounds';
 import { type AxisLayout, countRows, type PlanLayout } from './momentumPlanLayout';
 import type { FirmSupport, LeanSupport, MomentumPlanProblem } from './momentumPlanProblem';
 import type { StageProblem } from './solver';
@@ -14,8 +15,6 @@ export interface PreviousPass {
   readonly leanRate: readonly Float64Array[];
 }
 
-/** An interval of support narrower than this share of the torque scale fixes the torque. */
-const fixedWidth = 1e-9;
 /** Reference time of the weight on change of torque, s. */
 const changeTime = 0.1;
 /** Weight left on the plan's own objective when the shared scalar is what is made small. */
@@ -71,36 +70,6 @@ function addIdleRow(w: Writer): void {
   w.problem.bound[w.row] = 1;
   w.row += 1;
 }
-
-/** How the torque of an interval hangs on its control: torque share = slope * control + constant. */
-interface ControlForm {
-  readonly slope: number;
-  readonly constant: number;
-  /** share of the torque scale, folded over both ends of the interval */
-  readonly least: number;
-  readonly most: number;
-}
-
-/** Bounds the support sets to the momentum rate of interval k, as shares of the torque scale. */
-function boundControl(support: FirmSupport, layout: AxisLayout, k: number, isFree: boolean): ControlForm {
-  const nodes = support.ask.length;
-  let least = -Infinity;
-  let most = Infinity;
-  let carried = 0;
-  for (let end = 0; end < 2; end++) {
-    const node = (k + end) % nodes;
-    const force = support.verticalForce[node];
-    carried = Math.max(carried, force);
-    least = Math.max(least, (force * support.pressureMin[k] - support.ask[node]) / layout.torqueScale);
-    most = Math.min(most, (force * support.pressureMax[k] - support.ask[node]) / layout.torqueScale);
-  }
-  const isFixed = Math.abs(most - least) < fixedWidth && !(isFree && carried > 0);
-  return isFixed
-    ? { slope: 0, constant: (least + most) / 2, least, most }
-    : { slope: 1, constant: 0, least, most };
-}
-
-const freeControl: ControlForm = { slope: 1, constant: 0, least: -Infinity, most: Infinity };
 
 function formOfControl(w: Writer, layout: AxisLayout, control: ControlForm, factor: number): void {
   if (control.slope !== 0) addTerm(w, layout.control, factor * control.slope);
@@ -291,7 +260,7 @@ function writeLinearRows(
   tightening: number,
 ): void {
   const { array, support } = problem.axes[i];
-  const rows = countRows(problem, plan.mode, i, k);
+  const rows = countRows(problem, plan.mode, layout.hasEllipse, i, k);
   const isScaled = plan.mode === 'momentum';
   if (rows.momentum > 0) {
     const most = array.kind === 'gimballed' ? Math.sin(array.tiltMax) : 1;
@@ -434,7 +403,7 @@ export function assemblePlan(
       const { support } = problem.axes[i];
       const layout = plan.axes[i];
       if (support.kind === 'firm' && k < problem.intervals) {
-        controls[i] = boundControl(support, layout, k, isFree);
+        controls[i] = boundControl(support, layout.torqueScale, k, isFree);
       }
       if (k < problem.intervals) writeDynamics(problem, w, layout, controls[i], i, k, steps[i]);
       writeObjective(problem, w, layout, controls[i], i, k, widest[i], faint);
@@ -442,7 +411,7 @@ export function assemblePlan(
     }
     if (k === problem.intervals) continue;
     for (let i = 0; i < plan.axes.length; i++) {
-      if (problem.axes[i].array.kind === 'gimballed') writeCones(problem, w, plan, plan.axes[i], controls[i]);
+      if (plan.axes[i].hasEllipse) writeCones(problem, w, plan, plan.axes[i], controls[i]);
     }
   }
   writeBoundary(problem, plan, out);

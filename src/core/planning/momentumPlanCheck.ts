@@ -1,4 +1,5 @@
 import { discretiseLean } from './leanStep';
+import { scaleOfTorque } from './momentumPlanBounds';
 import { type AxisPlan, type LimitName, limitNames, type MomentumPlanProblem } from './momentumPlanProblem';
 
 /** What a plan does about one axis, node by node (N + 1 nodes; a cyclic plan repeats node 0 as node N). */
@@ -202,15 +203,11 @@ export function isWithinLimits(
   tolerance: number,
 ): boolean {
   return findings.every(({ limit, axis, excess, have }) => {
-    const { array } = problem.axes[axis];
     // half of a support can be nothing; its moment is measured against what the array can give
-    const scale = limit === 'centre of pressure' ? Math.max(have, scaleOfTorque(array)) : have;
+    const scale = limit === 'centre of pressure' ? Math.max(have, scaleOfTorque(problem.axes[axis])) : have;
     return excess <= tolerance * scale;
   });
 }
-
-const scaleOfTorque = (array: AxisPlan['array']): number =>
-  array.kind === 'gimballed' ? array.momentum * array.tiltRate : array.torque;
 
 /** Servo torque of one servo at every node of a schedule. */
 export function fillServoTorque(axis: AxisPlan, schedule: AxisSchedule): void {

@@ -1,10 +1,12 @@
 import {
+  type AxisFailure,
   attemptPlan,
   createPlanWork,
   type FoundPlan,
   openSlot,
   type PlanOptions,
   type PlanWork,
+  takeAxis,
 } from './momentumPlan';
 import { assemblePlan } from './momentumPlanAssembly';
 import {
@@ -105,16 +107,16 @@ export function findMeanMoment(problem: MomentumPlanProblem): MeanMoment | null 
 
 type Relaxation = Exclude<PlanMode, 'plan'>;
 
-/** Share of the certificate that each limit's rows carry. */
-function weighCertificate(layout: PlanLayout, certificate: Certificate): Map<LimitName, number> {
+/** Share of the certificates that each limit's rows carry. */
+function weighFailures(failures: readonly AxisFailure[]): Map<LimitName, number> {
   const weights = new Map<LimitName, number>();
-  let total = 0;
-  layout.rowLimit.forEach((limit, r) => {
-    const weight = Math.abs(certificate.dual[r]);
-    weights.set(limit, (weights.get(limit) ?? 0) + weight);
-    total += weight;
-  });
-  for (const [limit, weight] of weights) weights.set(limit, weight / total);
+  for (const { certificate, rowLimit } of failures) {
+    let total = 0;
+    for (const weight of certificate.dual) total += Math.abs(weight);
+    rowLimit.forEach((limit, r) => {
+      weights.set(limit, (weights.get(limit) ?? 0) + Math.abs(certificate.dual[r]) / total);
+    });
+  }
   return weights;
 }
 
@@ -297,7 +299,8 @@ export function planMomentum(
 ): MomentumPlanOutcome {
   const attempt = attemptPlan(problem, options, work);
   if (attempt.kind !== 'impossible') return attempt;
-  const { certificate } = attempt;
+  const { failures } = attempt;
+  const { certificate } = failures[0];
   const proving = createPlanWork();
   const cures: Cure[] = [];
   let iterations = attempt.iterations;
@@ -329,9 +332,15 @@ export function planMomentum(
       iterations,
     };
   }
-  const weights = weighCertificate(openSlot(problem, 'plan', work).layout, certificate);
-  const relaxed = relaxEach(problem, weights, options, work);
+  const weights = weighFailures(failures);
+  let relaxed = relaxEach(problem, weights, options, work);
   iterations += relaxed.iterations;
+  if (failures.length > 1 && relaxed.findings.every(({ amount }) => amount === Infinity)) {
+    // the axes fail for different reasons: no one limit cures both, so the first axis is spoken of
+    const first = takeAxis(problem, failures[0].axis);
+    relaxed = relaxEach(first, weighFailures(failures.slice(0, 1)), options, createPlanWork());
+    iterations += relaxed.iterations;
+  }
   for (const { limit, amount } of relaxed.findings) {
     if (amount === Infinity) continue;
     const cure = prove(problem, limit, amount, options, proving);

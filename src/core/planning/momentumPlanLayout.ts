@@ -1,3 +1,4 @@
+import { needsEllipse, scaleOfTorque } from './momentumPlanBounds';
 import type { LimitName, MomentumPlanProblem } from './momentumPlanProblem';
 import { createStageSizes, type StageSizes } from './solver';
 
@@ -27,6 +28,8 @@ export interface AxisLayout {
   readonly momentumScale: number;
   /** N m for a control of one: momentum rate at which the tilt rate limit is met at rest position */
   readonly torqueScale: number;
+  /** whether the tilt rate has rows: left out where other limits imply it */
+  readonly hasEllipse: boolean;
   readonly leanScale: number;
   readonly leanRateScale: number;
 }
@@ -51,7 +54,13 @@ export interface RowPlan {
 }
 
 /** Rows of axis i at node k; a cyclic plan has none at node N, which is node 0 again. */
-export function countRows(problem: MomentumPlanProblem, mode: PlanMode, i: number, k: number): RowPlan {
+export function countRows(
+  problem: MomentumPlanProblem,
+  mode: PlanMode,
+  hasEllipse: boolean,
+  i: number,
+  k: number,
+): RowPlan {
   const { array, support } = problem.axes[i];
   const isInterval = k < problem.intervals;
   const isNode = isInterval || problem.ends.kind === 'given';
@@ -63,15 +72,14 @@ export function countRows(problem: MomentumPlanProblem, mode: PlanMode, i: numbe
     torque: isInterval && array.torque < Infinity ? 2 : 0,
     servo: isNode && array.servo ? 2 : 0,
     lean: isNode && !isFirm ? 4 : 0,
-    cones: isInterval && array.kind === 'gimballed' ? 2 : 0,
+    cones: isInterval && hasEllipse ? 2 : 0,
   };
 }
 
-function layOutAxis(problem: MomentumPlanProblem, i: number, firstState: number): AxisLayout {
+function layOutAxis(problem: MomentumPlanProblem, mode: PlanMode, i: number, firstState: number): AxisLayout {
   const { array, support } = problem.axes[i];
   const isLean = support.kind === 'lean';
   const momentum = firstState + (isLean ? 2 : 0);
-  const torqueScale = array.kind === 'gimballed' ? array.momentum * array.tiltRate : array.torque;
   let leanScale = 1;
   let leanRateScale = 1;
   if (isLean) {
@@ -86,7 +94,9 @@ function layOutAxis(problem: MomentumPlanProblem, i: number, firstState: number)
     lean: isLean ? firstState : -1,
     leanRate: isLean ? firstState + 1 : -1,
     momentumScale: array.momentum,
-    torqueScale,
+    torqueScale: scaleOfTorque(problem.axes[i]),
+    hasEllipse:
+      array.kind === 'gimballed' && (mode !== 'plan' || needsEllipse(problem.axes[i], problem.intervals)),
     leanScale,
     leanRateScale,
   };
@@ -104,17 +114,16 @@ export function countBoundaryRows(problem: MomentumPlanProblem): number {
   return count;
 }
 
-const layoutKey = (problem: MomentumPlanProblem, mode: PlanMode): string =>
+const layoutKey = (problem: MomentumPlanProblem, mode: PlanMode, layouts: readonly AxisLayout[]): string =>
   [
     mode,
     problem.intervals,
     problem.ends.kind,
-    ...problem.axes.map(
-      (axis, i) =>
-        `${axis.support.kind} ${axis.array.kind} ${axis.array.torque < Infinity} ${axis.array.servo !== null} ${
-          problem.ends.kind === 'given' && problem.ends.end[i] !== null
-        }`,
-    ),
+    ...problem.axes.map(({ support, array }, i) => {
+      const isPinned = problem.ends.kind === 'given' && problem.ends.end[i] !== null;
+      const hasTorque = array.torque < Infinity;
+      return `${support.kind} ${layouts[i].hasEllipse} ${hasTorque} ${array.servo !== null} ${isPinned}`;
+    }),
   ].join('|');
 
 /**
@@ -127,13 +136,13 @@ export function layOutPlan(
   previous: PlanLayout | null,
 ): PlanLayout {
   const { intervals, axes } = problem;
-  const key = layoutKey(problem, mode);
   const axisLayouts: AxisLayout[] = [];
   let next = axes.length;
   for (let i = 0; i < axes.length; i++) {
-    axisLayouts.push(layOutAxis(problem, i, next));
+    axisLayouts.push(layOutAxis(problem, mode, i, next));
     next += axes[i].support.kind === 'lean' ? 4 : 2;
   }
+  const key = layoutKey(problem, mode, axisLayouts);
   if (previous && previous.key === key) return { ...previous, axes: axisLayouts };
   const linearRows: number[] = [];
   const cones: number[][] = [];
@@ -142,7 +151,7 @@ export function layOutPlan(
     let linear = 0;
     let coneCount = 0;
     for (let i = 0; i < axes.length; i++) {
-      const rows = countRows(problem, mode, i, k);
+      const rows = countRows(problem, mode, axisLayouts[i].hasEllipse, i, k);
       linear += rows.momentum + rows.pressure + rows.torque + rows.servo + rows.lean;
       coneCount += rows.cones;
       for (let r = 0; r < rows.momentum; r++) rowLimit.push('momentum');

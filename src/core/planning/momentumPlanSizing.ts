@@ -2,7 +2,7 @@ import { attemptPlan, type FoundPlan, openSlot, type PlanOptions, type PlanWork 
 import { assemblePlan } from './momentumPlanAssembly';
 import { scaleMomentum } from './momentumPlanChanges';
 import { type MomentumPlanProblem, requirePlanProblem } from './momentumPlanProblem';
-import { type SolverOutcome, solveStageProblem } from './solver';
+import { type Residuals, type SolverOutcome, solveStageProblem } from './solver';
 
 /** The least arrays that do the job, each the same share of what the problem has. */
 export interface SizedMomentum {
@@ -19,10 +19,18 @@ export interface SizedMomentum {
 export type SizingOutcome = SizedMomentum | Exclude<SolverOutcome, { kind: 'solved' }>;
 
 /** The plan at exactly the least momentum has no room to be found in; this is what is added for it. */
-const roundingUp = 1e-5;
+const growths = [1e-5, 1e-4, 1e-3];
+const servoGrowths = [1e-2, 3e-2, 0.1, 0.3];
 /** With servo limits the least momentum is found by passes: most of them, and when they have settled. */
 const sizingPasses = 5;
 const settled = 1e-4;
+
+interface LeastShare {
+  readonly kind: 'found';
+  readonly share: number;
+  readonly residuals: Residuals;
+  readonly iterations: number;
+}
 
 /**
  * Least momentum, as a share of the problem's own, at which a plan exists: one convex solve, the momentum
@@ -32,13 +40,14 @@ export function solveLeastShare(
   problem: MomentumPlanProblem,
   options: PlanOptions,
   work: PlanWork,
-): { readonly share: number; readonly iterations: number } | Exclude<SolverOutcome, { kind: 'solved' }> {
+): LeastShare | Exclude<SolverOutcome, { kind: 'solved' }> {
   const { layout, problem: program, solver } = openSlot(problem, 'momentum', work);
   const tightening = problem.axes.map(() => 1);
   assemblePlan(problem, layout, null, tightening, program);
   const outcome = solveStageProblem(program, options.solver, solver);
   if (outcome.kind !== 'solved') return outcome;
-  return { share: outcome.point.border[layout.sizes.boundaryRows], iterations: outcome.iterations };
+  const { point, residuals, iterations } = outcome;
+  return { kind: 'found', share: point.border[layout.sizes.boundaryRows], residuals, iterations };
 }
 
 /**
@@ -61,34 +70,24 @@ export function sizeMomentum(
   const hasServo = problem.axes.some(({ array }) => array.servo !== null);
   let share = 1;
   let iterations = 0;
+  let residuals: Residuals | null = null;
   for (let pass = 0; pass < (hasServo ? sizingPasses : 1); pass++) {
     const least = solveLeastShare(scaleMomentum(problem, share), options, work);
     iterations += least.iterations;
-    if ('kind' in least) return { ...least, iterations };
+    if (least.kind !== 'found') return { ...least, iterations };
     share *= least.share;
+    residuals = least.residuals;
     if (Math.abs(least.share - 1) < settled) break;
   }
   // linearised servo rows can leave the answer a little small: grow until a plan proves it
-  for (let growth = roundingUp; growth < 0.3; growth = Math.max(4 * growth, hasServo ? 1e-3 : 0)) {
+  for (const growth of hasServo ? [...growths, ...servoGrowths] : growths) {
     const enough = share * (1 + growth);
     const plan = attemptPlan(scaleMomentum(problem, enough), options, work);
     iterations += plan.iterations;
-    if (plan.kind === 'planned') {
-      const total = enough / (1 - spare);
-      const momentum = problem.axes.map(({ array }) => array.momentum * total);
-      return { kind: 'sized', share: total, momentum, plan, iterations };
-    }
-    if (growth >= 1e-3 && !hasServo) return { ...plan, iterations };
+    if (plan.kind !== 'planned') continue;
+    const total = enough / (1 - spare);
+    const momentum = problem.axes.map(({ array }) => array.momentum * total);
+    return { kind: 'sized', share: total, momentum, plan, iterations };
   }
-  return {
-    kind: 'gave-up',
-    residuals: {
-      equations: Number.NaN,
-      limits: Number.NaN,
-      stationarity: Number.NaN,
-      dualCone: Number.NaN,
-      complementarity: Number.NaN,
-    },
-    iterations,
-  };
+  return { kind: 'gave-up', residuals: residuals as Residuals, iterations };
 }
