@@ -16,6 +16,7 @@ export * from './loopScore';
 export * from './margins';
 export * from './plantModels';
 export * from './randomness';
+export * from './rigLoop';
 export * from './rollActuators';
 export * from './routh';
 export * from './sensorModel';

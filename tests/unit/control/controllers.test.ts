@@ -7,6 +7,8 @@ import {
 } from '../../../src/core/control/controllers';
 import { explainTerms } from '../../../src/core/control/controllerTerms';
 import { LAW_GAINS, readGains } from '../../../src/core/control/loopModel';
+import { assembleTiltPlant, assembleWheelPlant, nameLaw } from '../../../src/core/control/rigLoop';
+import { BENCH_SENSING, BENCH_SERVO } from '../../../src/core/rig';
 import { expectClose } from '../../support/closeTo';
 
 const DT = 0.01;
@@ -111,5 +113,26 @@ describe('what each term does, in words', () => {
     expect([p!.does, i!.does, d!.does].join(' ')).toMatch(
       /P acts as damping.*I acts as stiffness.*D acts as inertia/,
     );
+  });
+});
+
+describe('a rig’s control, servo and sensing entries', () => {
+  it('become a controller and a plant with all their delays added up', () => {
+    for (const control of [
+      { kind: 'feedback', lean: 1, leanRate: 2, tilt: 3, tiltRate: 0.4 },
+      { kind: 'pidTilt', kp: 1, ki: 2, kd: 3 },
+      { kind: 'reactionWheel', lean: 1, leanRate: 2, speed: 3 },
+      { kind: 'passive' },
+    ] as const) {
+      const named = nameLaw(control, false);
+      if (named.kind !== 'given') throw new Error('given gains are kept');
+      expect(named.controller).toMatchObject(control);
+    }
+    expect(nameLaw({ kind: 'computed' }, true)).toEqual({ kind: 'to-compute', law: 'reactionWheel' });
+    const body = { inertia: 0.3, stiffness: 7, damping: 0, momentum: 0.5, lineHeight: 0.1, gravity: 9.81 };
+    const plant = assembleTiltPlant(body, BENCH_SERVO, BENCH_SENSING);
+    /* 6 ms servo, half of a 4 ms frame, 2 ms loop */
+    expectClose([plant.delay, plant.servoLag, plant.sensorHeight], [0.01, 0.018, 0.28], { rel: 1e-12 });
+    expectClose(assembleWheelPlant(body, 0.003, BENCH_SENSING).delay, 0.002, { rel: 1e-12 });
   });
 });
