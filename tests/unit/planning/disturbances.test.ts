@@ -16,6 +16,10 @@ import { legMassCourse, legModelOf } from '../../../src/core/planning/legMass';
 import { type Disturbance, type LeggedBody, type Rig, STRIDER } from '../../../src/core/rig';
 import { expectClose } from '../../support/closeTo';
 
+/** Evenly spread: a plain double of this library is mostly near zero. */
+const evenly = (min: number, max: number) =>
+  fc.integer({ min: 0, max: 1_000_000 }).map((n) => min + ((max - min) * n) / 1_000_000);
+
 const LAND: DisturbanceSetting = { referenceHeight: 0, velocity: [0, 0], waves: undefined, road: undefined };
 const time = runTimes(4, 200);
 
@@ -38,17 +42,12 @@ describe('disturbances', () => {
 
   it('carries exactly the impulse of a load that switches on and off anywhere', () => {
     fc.assert(
-      fc.property(
-        fc.double({ min: 0, max: 3, noNaN: true }),
-        fc.double({ min: 0.001, max: 0.9, noNaN: true }),
-        fc.double({ min: -3, max: 3, noNaN: true }),
-        (start, duration, direction) => {
-          const load = sample({ kind: 'sideLoad', time: start, duration, force: 7, height: 0.4, direction });
-          const roll = -0.4 * 7 * Math.sin(direction) * duration;
-          const pitch = 0.4 * 7 * Math.cos(direction) * duration;
-          expectClose([area(load.roll, 0.02), area(load.pitch, 0.02)], [roll, pitch], { abs: 1e-12 }); // measured 2e-15
-        },
-      ),
+      fc.property(evenly(0, 3), evenly(0.001, 0.9), evenly(-3, 3), (start, duration, direction) => {
+        const load = sample({ kind: 'sideLoad', time: start, duration, force: 7, height: 0.4, direction });
+        const roll = -0.4 * 7 * Math.sin(direction) * duration;
+        const pitch = 0.4 * 7 * Math.cos(direction) * duration;
+        expectClose([area(load.roll, 0.02), area(load.pitch, 0.02)], [roll, pitch], { abs: 1e-12 }); // measured 4e-15
+      }),
       { seed: 77, numRuns: 200 },
     );
     // Also where it begins before the run and ends after it.
