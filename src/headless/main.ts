@@ -115,4 +115,10 @@ async function main(words: readonly string[]): Promise<number> {
   return outcome.kind === 'failing' ? 1 : 0;
 }
 
+// A reader that has seen enough (such as `head`) closes the pipe: that is no fault.
+process.stdout.on('error', (error: NodeJS.ErrnoException) => {
+  if (error.code !== 'EPIPE') throw error;
+  process.exit();
+});
+
 process.exitCode = await main(process.argv.slice(2));

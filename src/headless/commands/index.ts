@@ -1,5 +1,6 @@
 import type { Command } from '../command';
+import { planCommand } from './plan';
 import { weighCommand } from './weigh';
 
 /** Every command, in the order of the job. A new one is a file of its own and a line here. */
-export const COMMANDS: readonly Command[] = [weighCommand];
+export const COMMANDS: readonly Command[] = [weighCommand, planCommand];
