@@ -1,7 +1,6 @@
 import { useEffect, useState } from 'react';
 import { Header } from './Header';
 import { LedgerLadder, LedgerLineFolded } from './ledger/LedgerLadder';
-import { OpenedLine } from './ledger/OpenedLine';
 import { Ribbon } from './ribbon/Ribbon';
 import { StageFrame } from './StageFrame';
 import { Dialog } from './sheet/Dialog';
@@ -22,7 +21,6 @@ export function App() {
       <StageFrame />
       <Sheet />
       {isNarrow ? <NarrowLedger /> : <LedgerLadder />}
-      {!isNarrow && <OpenedLine />}
       <Ribbon />
       <Notices />
     </div>
@@ -59,7 +57,6 @@ function NarrowLedger() {
       <LedgerLineFolded onUnfold={() => setUnfolded(true)} />
       {isUnfolded && (
         <Dialog title="Ledger" onClose={() => setUnfolded(false)}>
-          <OpenedLine />
           <LedgerLadder />
         </Dialog>
       )}

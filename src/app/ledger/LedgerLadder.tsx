@@ -1,11 +1,14 @@
+import { useEffect, useId, useRef } from 'react';
 import { type LedgerLine, tightest } from '../../core/planning';
+import type { PlanView } from '../../core/trial';
 import { showQuantity } from '../sheet/showFigure';
 import { useShown } from '../state/reading';
 import { useSession } from '../state/session';
 import { stream } from '../state/stream';
-import { fails, quantityOf, spareWords } from './ledgerMarks';
+import { LineGrounds } from './LineGrounds';
+import { fails, quantityOf, sparePercent, spareWords } from './ledgerMarks';
 
-/** Where the right rail (what there is) stands, and the longest rung, in hundredths of the ladder's width. */
+/** Where the right rail (what there is) stands, in hundredths of the ladder's width; agrees with styles/ledger.css. */
 const RAIL = 78;
 const LONGEST = 100;
 
@@ -15,7 +18,7 @@ const rungLength = (line: LedgerLine): number => {
 };
 
 /** Opens or closes a line; opening it moves the ribbon to the instant at which it is tightest. */
-export function toggleLine(line: LedgerLine): void {
+function toggleLine(line: LedgerLine): void {
   const { openedLine, openLine } = useSession.getState();
   const isOpening = openedLine !== line.name;
   openLine(isOpening ? line.name : undefined);
@@ -26,47 +29,58 @@ export function toggleLine(line: LedgerLine): void {
 }
 
 function Rung({ line }: { readonly line: LedgerLine }) {
+  const id = useId();
+  const place = useRef<HTMLLIElement>(null);
   const isOpen = useSession((session) => session.openedLine === line.name);
-  const askSymbol = useSession((session) => session.units[line.ask.dimension]);
-  const ask = showQuantity(line.ask.value, line.ask.dimension, askSymbol);
-  const have = showQuantity(line.have.value, line.have.dimension, askSymbol);
+  const symbol = useSession((session) => session.units[line.ask.dimension]);
+  const show = (value: number): string => showQuantity(value, line.ask.dimension, symbol);
+
+  useEffect(() => {
+    if (isOpen) place.current?.scrollIntoView({ block: 'nearest' });
+  }, [isOpen]);
+
   return (
-    <li>
+    <li ref={place} data-fails={fails(line) || undefined} data-quantity={quantityOf(line.name)}>
       <button
         type="button"
         className="rung"
-        data-fails={fails(line) || undefined}
-        data-quantity={quantityOf(line.name)}
         aria-expanded={isOpen}
+        aria-controls={id}
         onClick={() => toggleLine(line)}
       >
         <span className="rung-label">{line.label}</span>
-        <span className="rung-spare">
-          {fails(line) && <b className="word-fails">Fails</b>} {spareWords(line.spare)}
+        <span className="rung-spare" aria-hidden>
+          {sparePercent(line.spare)}
         </span>
         <span className="rung-track" aria-hidden>
           <span className="rung-ask" style={{ width: `${rungLength(line)}%` }} />
         </span>
         <span className="rung-figures">
-          asks {ask} of {have}
+          {fails(line) && <b className="word-fails">Fails, {spareWords(line.spare)}. </b>}
+          {!fails(line) && <span className="unseen">{spareWords(line.spare)}. </span>}
+          asks {show(line.ask.value)} of {show(line.have.value)}
         </span>
       </button>
+      <div id={id} hidden={!isOpen}>
+        {isOpen && <LineGrounds line={line} />}
+      </div>
     </li>
   );
 }
 
 /** The ladder of asks against haves, tightest on top. The right rail is what there is; a rung through it fails. */
 export function LedgerLadder() {
-  const ledger = useShown()?.ledger;
+  const shown = useShown();
   return (
     <section className="ledger" aria-label="Ledger: asks against haves, tightest first">
       <header className="ledger-head">
         <h2>Ledger</h2>
-        <span aria-hidden>ask against have</span>
+        <span aria-hidden>spare</span>
       </header>
-      {!ledger && <p className="waiting">Working it out…</p>}
+      {!shown && <p className="waiting">Working it out…</p>}
+      {shown && <NoPlan plan={shown.plan} />}
       <ol>
-        {ledger?.lines.map((line) => (
+        {shown?.ledger.lines.map((line) => (
           <Rung key={line.name} line={line} />
         ))}
       </ol>
@@ -74,19 +88,48 @@ export function LedgerLadder() {
   );
 }
 
+/** Without a plan the ladder knows no asks over time, and must say so before it shows what is left. */
+function NoPlan({ plan }: { readonly plan: PlanView }) {
+  const goTo = useSession((session) => session.goTo);
+  if (plan.kind === 'planned') return null;
+  return (
+    <button
+      type="button"
+      className="no-plan"
+      data-fails={plan.kind === 'impossible'}
+      onClick={() => goTo('plan')}
+    >
+      <b>{plan.kind === 'impossible' ? 'No plan' : 'Not planned'}</b>
+      <span>{plan.sentence}</span>
+    </button>
+  );
+}
+
 /** The ladder folded to one line, for narrow screens: the tightest, by name. */
 export function LedgerLineFolded({ onUnfold }: { readonly onUnfold: () => void }) {
-  const ledger = useShown()?.ledger;
-  const line = ledger && tightest(ledger);
-  if (!line) return <div className="ledger-folded waiting">Working it out…</div>;
+  const shown = useShown();
+  const line = shown && tightest(shown.ledger);
+  if (!shown || !line) return <div className="ledger-folded waiting">Working it out…</div>;
+  const hasNoPlan = shown.plan.kind === 'impossible';
   return (
-    <button type="button" className="ledger-folded" data-fails={fails(line) || undefined} onClick={onUnfold}>
-      <span>
-        Tightest: <b>{line.label}</b>
-      </span>
-      <span>
-        {fails(line) && <b className="word-fails">Fails</b>} {spareWords(line.spare)}
-      </span>
+    <button
+      type="button"
+      className="ledger-folded"
+      data-fails={hasNoPlan || fails(line) || undefined}
+      onClick={onUnfold}
+    >
+      {hasNoPlan ? (
+        <b className="word-fails">No plan</b>
+      ) : (
+        <>
+          <span>
+            Tightest: <b>{line.label}</b>
+          </span>
+          <span>
+            {fails(line) && <b className="word-fails">Fails</b>} {spareWords(line.spare)}
+          </span>
+        </>
+      )}
     </button>
   );
 }

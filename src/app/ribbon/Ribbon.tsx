@@ -8,7 +8,7 @@ import type { Evaluated } from '../state/stream';
 import { Playhead } from './Playhead';
 import { RibbonPlot } from './RibbonPlot';
 import { countRows, placeBlocks } from './ribbonBlocks';
-import { lineCurves, momentCurves, tiltCurves } from './ribbonCurves';
+import { lineCurves, momentCurves, momentumCurves, pressureCurves, tiltCurves } from './ribbonCurves';
 import { Transport } from './Transport';
 
 /** The time strip: blocks, curves on one time axis, and the playhead. */
@@ -28,40 +28,47 @@ function RibbonBody({ shown }: { readonly shown: Evaluated }) {
   const rig = useDocument((document) => document.rig);
   const units = useSession((session) => session.units);
   const openedLine = useSession((session) => session.openedLine);
+  const lowerCurves = useSession((session) => session.lowerCurves);
   const isNarrow = useIsNarrow();
   const { motion } = shown;
   const length = motion.samples > 1 ? (motion.time[motion.samples - 1] as number) : 0;
 
+  const cycle = cycleOf(shown, rig.jobs.gait.kind === 'pattern');
   const tilt = useMemo(() => tiltCurves(shown, rig, units), [shown, rig, units]);
-  const second = useMemo(() => {
+  const lower = useMemo(() => {
     const line = shown.ledger.lines.find((candidate) => candidate.name === openedLine);
-    return (line && lineCurves(line, units)) ?? momentCurves(shown, units);
-  }, [shown, openedLine, units]);
-  const hasOpenedCourse = second.title !== 'Roll moment';
+    const ofLine =
+      line && (line.name === 'centreOfPressure' ? undefined : lineCurves(line, cycle, length, units));
+    if (ofLine) return ofLine;
+    const wanted = line?.name === 'centreOfPressure' ? 'pressure' : lowerCurves;
+    const pressure = wanted === 'pressure' ? pressureCurves(shown, cycle, length, units) : undefined;
+    return pressure ?? (wanted === 'momentum' ? momentumCurves(shown, units) : momentCurves(shown, units));
+  }, [shown, openedLine, lowerCurves, cycle, length, units]);
 
   return (
     <div className="ribbon-body">
-      <Blocks shown={shown} length={length} isGait={rig.jobs.gait.kind === 'pattern'} />
-      {(!isNarrow || !hasOpenedCourse) && <RibbonPlot data={tilt} length={length} hasTimeAxis={isNarrow} />}
-      {(!isNarrow || hasOpenedCourse) && <RibbonPlot data={second} length={length} hasTimeAxis />}
+      <Blocks shown={shown} cycle={cycle} length={length} />
+      {!isNarrow && <RibbonPlot data={tilt} length={length} hasTimeAxis={false} />}
+      <RibbonPlot data={isNarrow && openedLine === undefined ? tilt : lower} length={length} hasTimeAxis />
       <Fall outcome={shown.outcome} length={length} />
       <Playhead />
     </div>
   );
 }
 
+/** s, after which the plan repeats itself; 0 for a run that is gone through once. */
+const cycleOf = (shown: Evaluated, isGait: boolean): number =>
+  isGait ? (courseOf(shown)?.time.at(-1) ?? 0) : 0;
+
 interface BlocksProps {
   readonly shown: Evaluated;
   readonly length: number;
-  readonly isGait: boolean;
+  readonly cycle: number;
 }
 
-function Blocks({ shown, length, isGait }: BlocksProps) {
+function Blocks({ shown, length, cycle }: BlocksProps) {
   const course = courseOf(shown);
-  const placed = useMemo(() => {
-    const cycle = isGait ? (course?.time.at(-1) ?? 0) : 0;
-    return placeBlocks(course?.blocks ?? [], cycle, length);
-  }, [course, isGait, length]);
+  const placed = useMemo(() => placeBlocks(course?.blocks ?? [], cycle, length), [course, cycle, length]);
   const rows = countRows(course?.blocks ?? []);
   if (rows === 0) return null;
   return (

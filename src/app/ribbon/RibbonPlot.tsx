@@ -84,20 +84,17 @@ export function RibbonPlot(props: RibbonPlotProps) {
   const isDark = useIsDark();
   const structure = structureOf(props.data);
 
+  // In this order within one commit: what is newest, then a new plot if one is called for, then the data.
   useLayoutEffect(() => {
     latest.current = props;
-    plot.current?.setData(columns(props.data));
   }, [props]);
 
   // biome-ignore lint/correctness/useExhaustiveDependencies: the structure stands for all that calls for a new plot
-  useEffect(() => {
+  useLayoutEffect(() => {
     const holder = box.current;
     if (!holder) return;
-    const made = new uPlot(
-      optionsFor(latest, isDark, holder.getBoundingClientRect()),
-      columns(latest.current.data),
-      holder,
-    );
+    const size = holder.getBoundingClientRect();
+    const made = new uPlot(optionsFor(latest, isDark, size), columns(latest.current.data), holder);
     plot.current = made;
     const sizes = new ResizeObserver(() => {
       const { width, height } = holder.getBoundingClientRect();
@@ -110,6 +107,10 @@ export function RibbonPlot(props: RibbonPlotProps) {
       plot.current = undefined;
     };
   }, [structure, isDark, props.hasTimeAxis]);
+
+  useLayoutEffect(() => {
+    plot.current?.setData(columns(props.data));
+  }, [props.data]);
 
   return (
     <figure className="plot" aria-label={`${props.data.title} over time, ${props.data.unit}`}>

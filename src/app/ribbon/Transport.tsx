@@ -1,5 +1,6 @@
 import { useEffect, useRef } from 'react';
 import { useIsLooping, useIsPlaying, useSpeed } from '../state/reading';
+import { LOWER_CURVES, type LowerCurves, useSession } from '../state/session';
 import { stream } from '../state/stream';
 
 const SPEEDS = [1, 0.5, 0.2, 0.1] as const;
@@ -35,7 +36,34 @@ export function Transport() {
           ×{speed}
         </button>
       </div>
+      <CurveChoice />
     </div>
+  );
+}
+
+const CURVE_WORDS: Readonly<Record<LowerCurves, string>> = {
+  moment: 'Moment',
+  momentum: 'Momentum',
+  pressure: 'Pressure',
+};
+
+/** What the lower band shows. */
+function CurveChoice() {
+  const lowerCurves = useSession((session) => session.lowerCurves);
+  const showCurves = useSession((session) => session.showCurves);
+  return (
+    <select
+      className="transport-curves"
+      aria-label="Lower curves"
+      value={lowerCurves}
+      onChange={(event) => showCurves(event.target.value as LowerCurves)}
+    >
+      {LOWER_CURVES.map((curves) => (
+        <option key={curves} value={curves}>
+          {CURVE_WORDS[curves]}
+        </option>
+      ))}
+    </select>
   );
 }
 

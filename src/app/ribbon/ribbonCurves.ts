@@ -119,8 +119,67 @@ export function momentCurves(shown: Evaluated, units: Units): RibbonPlotData {
   return { title: 'Roll moment', unit: unit.symbol, time: Array.from(motion.time), curves, limits, range };
 }
 
+/** Momentum the array holds in roll, between the most its tilt limits allow. */
+export function momentumCurves(shown: Evaluated, units: Units): RibbonPlotData {
+  const { motion } = shown;
+  const unit = unitFor('angularMomentum', units.angularMomentum);
+  const scale = 1 / unit.toSI;
+  const curves: Curve[] = [
+    { label: 'momentum', look: 'momentum', values: column(motion.momentum, 3, 0, motion.samples, scale) },
+  ];
+  const line = shown.ledger.lines.find((candidate) => candidate.name === 'momentum');
+  const most = line ? line.have.value * scale : 0;
+  const limits = most > 0 ? [most, -most] : [];
+  const range = rangeFor(curves, limits, 0.02 * scale);
+  return {
+    title: 'Momentum in roll',
+    unit: unit.symbol,
+    time: Array.from(motion.time),
+    curves,
+    limits,
+    range,
+  };
+}
+
+/** Planned centre of pressure between the edges of the support; undefined where nothing stands on the ground. */
+export function pressureCurves(
+  shown: Evaluated,
+  cycle: number,
+  length: number,
+  units: Units,
+): RibbonPlotData | undefined {
+  const course = shown.plan.kind === 'unplanned' ? undefined : shown.plan.course;
+  const samples = course?.supportLeft.length ?? 0;
+  if (!course || samples === 0) return undefined;
+  const unit = unitFor('length', units.length);
+  const scale = 1 / unit.toSI;
+  const curves: Curve[] = [
+    { label: 'edges of the support', look: 'have', values: column(course.supportLeft, 1, 0, samples, scale) },
+    {
+      label: 'edges of the support',
+      look: 'have',
+      values: column(course.supportRight, 1, 0, samples, scale),
+    },
+  ];
+  if (course.centreOfPressure.length === samples) {
+    curves.push({
+      label: 'planned',
+      look: 'ask',
+      values: column(course.centreOfPressure, 1, 0, samples, scale),
+    });
+  }
+  const repeated = repeatOver(Array.from(course.time), curves, cycle, length);
+  const range = rangeFor(curves, [], 0.001 * scale);
+  return { title: 'Centre of pressure, to the left', unit: unit.symbol, ...repeated, limits: [], range };
+}
+
 /** An opened ledger line over the plan: what is asked and what there is. Undefined for a line without a course. */
-export function lineCurves(line: LedgerLine, units: Units): RibbonPlotData | undefined {
+export function lineCurves(
+  line: LedgerLine,
+  cycle: number,
+  length: number,
+  units: Units,
+): RibbonPlotData | undefined {
   if (!line.course) return undefined;
   const unit = unitFor(line.ask.dimension, units[line.ask.dimension]);
   const scale = 1 / unit.toSI;
@@ -133,10 +192,31 @@ export function lineCurves(line: LedgerLine, units: Units): RibbonPlotData | und
   return {
     title: line.label,
     unit: unit.symbol,
-    time: Array.from(line.course.time),
-    curves,
+    ...repeatOver(Array.from(line.course.time), curves, cycle, length),
     limits: [],
     range: [low * ROOM, high > 0 ? high * ROOM : 1],
+  };
+}
+
+/** Repeats the curves of one cycle to the end of the ribbon; leaves them alone where nothing repeats. */
+function repeatOver(
+  time: readonly number[],
+  curves: readonly Curve[],
+  cycle: number,
+  length: number,
+): { readonly time: readonly number[]; readonly curves: readonly Curve[] } {
+  if (!(cycle > 0) || cycle >= length) return { time, curves };
+  const turns = Math.ceil(length / cycle);
+  // The last instant of a cycle is the first of the next.
+  const inner = time.filter((seconds) => seconds < cycle - 1e-9).length;
+  const place = (k: number): number => k % inner;
+  const all = Array.from({ length: turns * inner }, (_, k) => k);
+  return {
+    time: all.map((k) => (time[place(k)] as number) + Math.floor(k / inner) * cycle),
+    curves: curves.map((curve) => ({
+      ...curve,
+      values: all.map((k) => curve.values[place(k)] as number | null),
+    })),
   };
 }
 

@@ -28,6 +28,10 @@ export interface StageInsets {
   readonly bottom: number;
 }
 
+/** What the lower band of the ribbon shows while no ledger line is opened. */
+export const LOWER_CURVES = ['moment', 'momentum', 'pressure'] as const;
+export type LowerCurves = (typeof LOWER_CURVES)[number];
+
 export interface SessionState {
   readonly station: StationId;
   readonly selection: Selection;
@@ -39,6 +43,7 @@ export interface SessionState {
   /** Off: an edit of one gyro goes to all that are like it. */
   readonly isEachOnItsOwn: boolean;
   readonly stageInsets: StageInsets;
+  readonly lowerCurves: LowerCurves;
 
   readonly goTo: (station: StationId) => void;
   readonly select: (selection: Selection) => void;
@@ -49,6 +54,7 @@ export interface SessionState {
   readonly openLine: (line: LedgerLineName | undefined) => void;
   readonly setEachOnItsOwn: (isEachOnItsOwn: boolean) => void;
   readonly setStageInsets: (insets: StageInsets) => void;
+  readonly showCurves: (lowerCurves: LowerCurves) => void;
 }
 
 export const NOTHING_SELECTED: Selection = { kind: 'none', index: 0 };
@@ -63,6 +69,7 @@ export const useSession = create<SessionState>()((set) => ({
   openedLine: undefined,
   isEachOnItsOwn: false,
   stageInsets: { left: 0, right: 0, top: 0, bottom: 0 },
+  lowerCurves: 'moment',
 
   goTo: (station) => set({ station }),
   select: (selection) =>
@@ -78,4 +85,5 @@ export const useSession = create<SessionState>()((set) => ({
   openLine: (openedLine) => set({ openedLine }),
   setEachOnItsOwn: (isEachOnItsOwn) => set({ isEachOnItsOwn }),
   setStageInsets: (stageInsets) => set({ stageInsets }),
+  showCurves: (lowerCurves) => set({ lowerCurves, openedLine: undefined }),
 }));
