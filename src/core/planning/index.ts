@@ -19,6 +19,7 @@ export * from './numberTable';
 export * from './patternGait';
 export * from './planLedger';
 export * from './rigPlan';
+export * from './rigSeakeeping';
 export * from './rollRun';
 export * from './seakeeping';
 export * from './sequence';

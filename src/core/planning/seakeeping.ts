@@ -2,8 +2,8 @@
  * Roll of a floating body in waves with and without its array, by frequencies. The array answers roll rate: momentum e = gain x roll angle, so that its torque -de/dt is damping. Reductions are of the
  * root-mean-square roll angle: Perez, Ship Motion Control (2005).
  */
-import type { RightingModel } from '../physics';
-import { deepWaterWavenumber, effectiveSlopeShare, type WaveBody, type WaveTrain } from './waveLoad';
+import { type RightingModel, waveNumber } from '../physics';
+import { effectiveSlopeShare, type WaveBody, type WaveTrain } from './waveLoad';
 
 /** A body that rolls on the water. */
 export interface RollBody {
@@ -77,7 +77,7 @@ export function rollPerMoment(body: RollBody, damping: number, frequency: number
  * @param heading    rad
  */
 export function rollPerSlope(body: RollBody, damping: number, frequency: number, heading: number): number {
-  const share = effectiveSlopeShare(body.waves, deepWaterWavenumber(frequency), heading);
+  const share = effectiveSlopeShare(body.waves, waveNumber(frequency), heading);
   return body.stiffness * share * Math.abs(Math.sin(heading)) * rollPerMoment(body, damping, frequency);
 }
 
@@ -177,6 +177,3 @@ export function largestGain(body: RollBody, train: WaveTrain, array: RollArray, 
   }
   return good;
 }
-
-/** Percent by which the root-mean-square roll ANGLE is less with the array than without. Source: Perez (2005). */
-export const rollReduction = (withArray: number, without: number): number => 100 * (1 - withArray / without);

@@ -1,6 +1,6 @@
 /** Waves under a small hull by the theory of effective slope: regular trains and seeded seas, as surface, slope and roll moment. */
 import { createRandom, drawUniform } from '../control';
-import { STANDARD_GRAVITY } from '../physics';
+import { compileSpectrum, encounterFrequency, type WaveSpectrum, waveNumber } from '../physics';
 import type { Disturbance } from '../rig';
 
 /** What of a hull the waves act on. */
@@ -31,23 +31,6 @@ export interface WaveTrain {
 
 export type Waves = Extract<Disturbance, { kind: 'waves' | 'sea' }>;
 
-/** Wave number of deep water, rad/m: w^2 / g. Source: Airy. */
-export const deepWaterWavenumber = (frequency: number): number => (frequency * frequency) / STANDARD_GRAVITY;
-
-/**
- * Frequency at which a moving hull meets a deep-water wave, rad/s: w - w^2 V cos(heading) / g.
- *
- * @param heading  rad, 0 following sea, pi head sea
- *
- * Source: Lloyd, Seakeeping (1989).
- */
-export const encounterFrequency = (
-  frequency: number,
-  speed: number,
-  heading: number,
-  gravity: number = STANDARD_GRAVITY,
-): number => frequency - (frequency * frequency * speed * Math.cos(heading)) / gravity;
-
 /**
  * Share of the wave's slope that a hull answers to: the slope averaged over its beam, at half its draught.
  *
@@ -67,23 +50,22 @@ const COMPONENTS = 160;
 const LOWEST = 0.5;
 const HIGHEST = 6;
 
-/** Peak enhancement of a mean JONSWAP spectrum. Source: Hasselmann et al., Deutsche Hydrographische Zeitschrift A8 (1973). */
+/** Peak enhancement of a mean JONSWAP sea. Source: Hasselmann et al., Deutsche Hydrographische Zeitschrift A8 (1973). */
 const PEAK_ENHANCEMENT = 3.3;
 
-/** Shape of a spectrum over frequency, of any height: Bretschneider's, times JONSWAP's peak where asked. */
-function spectrumShape(kind: 'bretschneider' | 'jonswap', frequency: number, peak: number): number {
-  const ratio = peak / frequency;
-  const base = frequency ** -5 * Math.exp(-1.25 * ratio ** 4);
-  if (kind === 'bretschneider') return base;
-  const width = frequency <= peak ? 0.07 : 0.09;
-  const off = (frequency - peak) / (width * peak);
-  return base * PEAK_ENHANCEMENT ** Math.exp(-0.5 * off * off);
+/** The spectrum a sea disturbance is drawn from. */
+export function spectrumOf(sea: Extract<Waves, { kind: 'sea' }>): WaveSpectrum {
+  const { significantHeight: height, peakPeriod } = sea;
+  return sea.spectrum === 'jonswap'
+    ? { kind: 'jonswap', height, peakPeriod, gamma: PEAK_ENHANCEMENT }
+    : { kind: 'bretschneider', height, peakPeriod };
 }
 
 /**
  * The sinusoids of a wave disturbance. A sea takes random frequencies within bands of equal ratio from half to
  * six times the peak and random phases, all from its seed, and its amplitudes are scaled to the significant
- * height asked, Hs = 4 sqrt(sum a^2 / 2). Slopes of shorter waves are left out; a hull averages them away.
+ * height asked, Hs = 4 sqrt(sum a^2 / 2). Slopes of shorter waves are left out; a hull averages them away. Bands
+ * of equal ratio, not of equal energy: a lightly damped hull may resonate far out in the tail of a long sea.
  */
 export function createWaveTrain(waves: Waves): WaveTrain {
   if (waves.kind === 'waves') {
@@ -93,12 +75,13 @@ export function createWaveTrain(waves: Waves): WaveTrain {
       amplitude: Float64Array.of(waves.height / 2),
       frequency: Float64Array.of(frequency),
       encounter: Float64Array.of(frequency),
-      wavenumber: Float64Array.of(deepWaterWavenumber(frequency)),
+      wavenumber: Float64Array.of(waveNumber(frequency)),
       phase: Float64Array.of(0),
       heading: waves.heading,
     };
   }
   const random = createRandom(waves.seed);
+  const density = compileSpectrum(spectrumOf(waves));
   const peak = (2 * Math.PI) / waves.peakPeriod;
   const frequency = new Float64Array(COMPONENTS);
   const amplitude = new Float64Array(COMPONENTS);
@@ -110,7 +93,7 @@ export function createWaveTrain(waves: Waves): WaveTrain {
     const w = low * ratio ** drawUniform(random);
     frequency[i] = w;
     phase[i] = 2 * Math.PI * drawUniform(random);
-    amplitude[i] = Math.sqrt(2 * spectrumShape(waves.spectrum, w, peak) * low * (ratio - 1));
+    amplitude[i] = Math.sqrt(2 * density(w) * low * (ratio - 1));
     energy += amplitude[i] ** 2 / 2;
   }
   const scale = energy > 0 ? waves.significantHeight / (4 * Math.sqrt(energy)) : 0;
@@ -120,7 +103,7 @@ export function createWaveTrain(waves: Waves): WaveTrain {
     amplitude,
     frequency,
     encounter: frequency.map((w) => encounterFrequency(w, waves.speed, waves.heading)),
-    wavenumber: frequency.map(deepWaterWavenumber),
+    wavenumber: frequency.map((w) => waveNumber(w)),
     phase,
     heading: waves.heading,
   };
