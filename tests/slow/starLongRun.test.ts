@@ -1,5 +1,5 @@
 /** A hundred seconds without losses: energy and angular momentum kept to 1e-9 of themselves. */
-import { describe, expect, it } from 'vitest';
+import { describe, it } from 'vitest';
 import { conservedQuantities } from '../../src/core/physics/conserved';
 import type { StarFooting } from '../../src/core/physics/footing';
 import { type StarColumns, simulateExactly, simulateFree } from '../../src/core/physics/freeMotion';

@@ -115,7 +115,7 @@ export function describeToMujoco(
   const { base, gyros, gravity } = description;
   return `<mujoco><compiler angle="radian" autolimits="false"/>
     <option timestep="${timeStep}" integrator="${integrator}" gravity="${list(gravity ?? standardGravity)}">
-    <flag contact="disable" constraint="disable" energy="enable"/></option>
+    <flag contact="disable" constraint="disable"/></option>
     <worldbody><body name="base">${baseJoints(description)}${inertial(base.mass, base.com, base.inertia)}
     ${gyros.map((gyro, i) => gyroXml(gyro, i, tilt[i]!)).join('\n')}</body></worldbody></mujoco>`;
 }
