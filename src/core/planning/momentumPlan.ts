@@ -201,7 +201,21 @@ export const takeAxis = (problem: MomentumPlanProblem, i: number): MomentumPlanP
       : { kind: 'given', start: [problem.ends.start[i]], end: [problem.ends.end[i]] },
 });
 
-/** Plans a problem of one axis, with passes over the servo torque until its true value keeps its limit. */
+/** Whether the servo torque's rows have a say in the optimum. */
+function isServoPressing(layout: PlanLayout, point: StagePoint): boolean {
+  let most = 0;
+  for (let r = 0; r < layout.rowLimit.length; r++) {
+    if (layout.rowLimit[r] === 'servo torque') most = Math.max(most, point.dual[r]);
+  }
+  return most > 1e-6;
+}
+
+/**
+ * Plans a problem of one axis, with passes over the servo torque until its true value keeps its limit.
+ *
+ * The first pass takes the gimbals as upright; where the servo limit then has a say, one more about the
+ * tilts found makes it say the right thing.
+ */
 function attemptAxis(
   problem: MomentumPlanProblem,
   i: number,
@@ -212,13 +226,16 @@ function attemptAxis(
   const hasServo = problem.axes[0].array.servo !== null;
   const tightening: Tightening = { share: 1, lastShare: 1, lastUsed: 1 };
   let previous: PreviousPass | null = null;
+  let found: FoundPlan | null = null;
   let iterations = 0;
   let residuals: Residuals | null = null;
   for (let pass = 0; pass < (hasServo ? options.servoPasses : 1); pass++) {
     const constant = assemblePlan(problem, layout, previous, [tightening.share], program);
     const outcome = solveStageProblem(program, options.solver, solver);
     iterations += outcome.iterations;
-    if (outcome.kind === 'impossible') {
+    if (outcome.kind !== 'solved') {
+      if (found) break;
+      if (outcome.kind === 'gave-up') return { ...outcome, iterations };
       const { certificate } = outcome;
       return {
         kind: 'impossible',
@@ -226,18 +243,19 @@ function attemptAxis(
         iterations,
       };
     }
-    if (outcome.kind === 'gave-up') return { ...outcome, iterations };
     residuals = outcome.residuals;
     const axes = [scheduleAxis(problem, layout, outcome.point, 0)];
     const limits = checkPlanLimits(problem, axes, options.refine);
     if (isWithinLimits(problem, limits, options.limitTolerance)) {
       const objective = (outcome.objective + constant) / problem.intervals;
-      return { kind: 'planned', axes, objective, residuals, limits, iterations };
+      found = { kind: 'planned', axes, objective, residuals, limits, iterations };
+      if (!hasServo || pass > 0 || !isServoPressing(layout, outcome.point)) break;
     }
     previous = passOf(problem, layout, axes);
     // what the rows at the nodes cannot see of the torque between them is taken off their limit
     if (pass > 0) tighten(tightening, worstServo(limits, 0));
   }
+  if (found) return { ...found, iterations };
   return { kind: 'gave-up', residuals: residuals as Residuals, iterations };
 }
 
