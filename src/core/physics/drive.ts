@@ -172,7 +172,7 @@ export function topSpeed(drive: DriveModel, dragAt: DragLaw): number {
   if (!(spareTorque(0) > 0)) return 0;
   let low = 0;
   let high = drive.voltage / drive.torqueConstant;
-  for (let i = 0; i < 200 && high - low > 1e-15 * high; i++) {
+  for (let i = 0; i < 60 && high - low > 1e-14 * high; i++) {
     const middle = (low + high) / 2;
     if (spareTorque(middle) > 0) low = middle;
     else high = middle;

@@ -1,6 +1,6 @@
 import type { FormulaNotes } from './formula';
 import type { HullSection } from './hullSection';
-import { createSlice, sliceBelow } from './sectionSlice';
+import { createSlice, type SectionSlice, sliceBelow } from './sectionSlice';
 
 export const STANDARD_GRAVITY = 9.806_65;
 
@@ -67,19 +67,19 @@ export const HYDROSTATIC_FORMULAS: FormulaNotes<
   'waterline' | 'buoyancy' | 'KB' | 'BM' | 'GM' | 'GZ' | 'wallSided' | 'loll'
 > = {
   waterline: {
-    formula: 'rho L A(z) = m, A from the section polygon cut at z',
+    formula: 'ρ L A(z) = m, A from the section polygon cut at z',
     source: 'Archimedes; Derrett & Barrass, Ship Stability for Masters and Mates',
   },
-  buoyancy: { formula: 'rho g V = m g', source: 'Archimedes' },
-  KB: { formula: 'KB = int z dA / A below the waterline', source: 'centroid of the cut polygon' },
-  BM: { formula: 'BM = I_waterplane / V = b^3 / (12 A)', source: 'Derrett & Barrass' },
-  GM: { formula: 'GM = KB + BM - KG', source: 'Derrett & Barrass' },
+  buoyancy: { formula: 'ρ g V = m g', source: 'Archimedes' },
+  KB: { formula: 'KB = ∫ z dA / A below the waterline', source: 'centroid of the cut polygon' },
+  BM: { formula: 'BM = I_waterplane / V = b³ / (12 A)', source: 'Derrett & Barrass' },
+  GM: { formula: 'GM = KB + BM − KG', source: 'Derrett & Barrass' },
   GZ: {
-    formula: 'GZ = y_G - y_B across the heeled waterline, section cut at constant area',
+    formula: 'GZ = y_G − y_B across the heeled waterline, section cut at constant area',
     source: 'statics; section integration',
   },
-  wallSided: { formula: 'GZ = sin(th) (GM + BM tan^2(th) / 2)', source: 'Derrett & Barrass' },
-  loll: { formula: 'tan(th) = sqrt(-2 GM / BM)', source: 'Derrett & Barrass' },
+  wallSided: { formula: 'GZ = sin φ (GM + ½ BM tan² φ)', source: 'Derrett & Barrass' },
+  loll: { formula: 'tan φ = √(−2 GM / BM)', source: 'Derrett & Barrass' },
 };
 
 /** Closed area of all outlines, m^2. */
@@ -100,20 +100,21 @@ function findLevel(
   section: HullSection,
   heel: number,
   area: number,
-  slice: ReturnType<typeof createSlice>,
+  slice: SectionSlice,
+  start: number,
 ): number {
   let low = -largestRadius(section);
   let high = -low;
-  let level = 0;
-  for (let i = 0; i < 100; i++) {
+  let level = start;
+  for (let i = 0; i < 80; i++) {
     sliceBelow(section, heel, level, slice);
     const excess = slice.area - area;
-    if (Math.abs(excess) <= 4e-16 * area) break;
+    if (Math.abs(excess) <= 2e-15 * area) break;
     if (excess > 0) high = level;
     else low = level;
     const step = slice.breadth > 0 ? level - excess / slice.breadth : Number.NaN;
     const next = step > low && step < high ? step : (low + high) / 2;
-    if (next === level || high - low <= 1e-16 * high) break;
+    if (Math.abs(next - level) <= 4e-16 * Math.abs(level)) break;
     level = next;
   }
   return level;
@@ -144,7 +145,7 @@ export function flotation(section: HullSection, load: Loading): FlotationOutcome
   if (!canFloat(section, load)) return sinking(section, load);
   const area = displacedArea(section, load);
   const slice = createSlice(section);
-  const waterline = findLevel(section, 0, area, slice);
+  const waterline = findLevel(section, 0, area, slice, 0);
   const KB = slice.momentZ / slice.area;
   const BM = slice.breadthInertia / slice.area;
   return {
@@ -184,28 +185,32 @@ export function rightingArms(
   if (!canFloat(section, load)) return sinking(section, load);
   const area = displacedArea(section, load);
   const slice = createSlice(section);
+  let level = 0;
   const armAt = (heel: number): number => {
-    findLevel(section, heel, area, slice);
+    level = findLevel(section, heel, area, slice, level);
     return gravityOffset(load, heel) - slice.momentY / slice.area;
   };
+  const deckEdge = (heel: number): number =>
+    section.deckHeight * Math.cos(heel) - section.halfBeam * Math.sin(heel);
   const deckAbove = (heel: number): number => {
-    const level = findLevel(section, heel, area, slice);
-    return section.deckHeight * Math.cos(heel) - section.halfBeam * Math.sin(heel) - level;
+    level = findLevel(section, heel, area, slice, level);
+    return deckEdge(heel) - level;
   };
   const angle = new Float64Array(points + 1);
   const arm = new Float64Array(points + 1);
+  const deck = new Float64Array(points + 1);
   const areaBelow = new Float64Array(points + 1);
   for (let i = 0; i <= points; i++) {
     angle[i] = (greatest * i) / points;
+    const middle = i > 0 ? armAt((angle[i]! + angle[i - 1]!) / 2) : 0;
     arm[i] = armAt(angle[i]!);
+    deck[i] = deckEdge(angle[i]!) - level;
     if (i > 0) {
-      const middle = armAt((angle[i]! + angle[i - 1]!) / 2);
       areaBelow[i] = areaBelow[i - 1]! + ((arm[i - 1]! + 4 * middle + arm[i]!) * greatest) / points / 6;
     }
   }
   let top = 0;
   for (let i = 1; i <= points; i++) if (arm[i]! > arm[top]!) top = i;
-  const fall = arm[top]! > 0 ? crossing(angle, armAt, top, -1) : undefined;
   const stands = load.centreOffset === 0 && initialSlope(section, load) < 0;
   return {
     kind: 'floats',
@@ -214,9 +219,9 @@ export function rightingArms(
       arm,
       greatestArm: arm[top]!,
       greatestArmAngle: angle[top]!,
-      vanishingAngle: fall,
-      deckImmersionAngle: crossing(angle, deckAbove, 0, -1),
-      lollAngle: stands ? crossing(angle, armAt, 1, 1) : undefined,
+      vanishingAngle: arm[top]! > 0 ? crossing(angle, arm, armAt, top, -1) : undefined,
+      deckImmersionAngle: crossing(angle, deck, deckAbove, 0, -1),
+      lollAngle: stands ? crossing(angle, arm, armAt, 1, 1) : undefined,
       area: areaBelow,
     },
   };
@@ -234,14 +239,15 @@ const gravityOffset = (load: Loading, heel: number): number =>
 /** First angle at or after index `from` where f passes zero rising (+1) or falling (-1); by halving. */
 function crossing(
   angle: Float64Array,
+  sampled: Float64Array,
   f: (heel: number) => number,
   from: number,
   sense: 1 | -1,
 ): number | undefined {
   for (let i = from; i + 1 < angle.length; i++) {
+    if (!(sense * sampled[i]! <= 0 && sense * sampled[i + 1]! > 0)) continue;
     let low = angle[i]!;
     let high = angle[i + 1]!;
-    if (!(sense * f(low) <= 0 && sense * f(high) > 0)) continue;
     for (let k = 0; k < 60 && high - low > 1e-13; k++) {
       const middle = (low + high) / 2;
       if (sense * f(middle) > 0) high = middle;

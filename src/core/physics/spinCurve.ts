@@ -91,7 +91,7 @@ export function spinUp(
   dragAt: DragLaw,
   target: number,
   from = 0,
-  panels = 120,
+  panels = 60,
 ): SpinUpOutcome {
   const top = topSpeed(drive, dragAt);
   if (!(target < top)) return { kind: 'falls short', asked: target, topSpeed: top };
@@ -172,7 +172,7 @@ export function spinDown(
   friction: number,
   from: number,
   endFraction = 0.01,
-  panels = 120,
+  panels = 60,
 ): SpinDown {
   const time = new Float64Array(panels + 1);
   const speed = new Float64Array(panels + 1);
@@ -228,7 +228,7 @@ export function brakeWheel(
 ): Braking {
   const brake = drive.torqueConstant * current;
   const friction = drive.torqueConstant * drive.noLoadCurrent;
-  const down = spinDown(inertia, dragAt, brake + friction, from, 1e-3, 200);
+  const down = spinDown(inertia, dragAt, brake + friction, from, 1e-3, 60);
   let turned = 0;
   for (let i = 1; i < down.time.length; i++) {
     turned += ((down.speed[i]! + down.speed[i - 1]!) / 2) * (down.time[i]! - down.time[i - 1]!);

@@ -3,7 +3,7 @@ import { bearingDrag, lubricantDrag } from './bearings';
 import type { DragLaw } from './drive';
 import type { WheelDrag } from './losses';
 import { outerRadiusOf } from './wheelProperties';
-import { airAt, type Gas, STANDARD_PRESSURE, type Surround, windage } from './windage';
+import { airAt, type Gas, STANDARD_PRESSURE, type Surround, type Windage, windage } from './windage';
 
 /** What the gas sees of a wheel. */
 export interface WheelEnvelope {
@@ -55,6 +55,8 @@ export interface WheelDragParts {
   readonly lubricant: DragLaw;
   /** N*m, at a speed. */
   readonly windage: DragLaw;
+  /** The same opened up: faces, rim, regime. */
+  readonly windageAt: (speed: number) => Windage;
   readonly total: DragLaw;
 }
 
@@ -81,12 +83,14 @@ export function wheelDragParts(
   for (const load of loads) bearings += bearingDrag(bearing.friction, load, bearing.bore);
   const meanDiameter = (bearing.bore * (1 + USUAL_DIAMETER_RATIO)) / 2;
   const lubricant = (speed: number): number => loads.length * lubricantDrag(speed, meanDiameter, viscosity);
-  const wind = (speed: number): number =>
-    windage(envelope.radius, envelope.width, speed, gas, surround).torque;
+  const windageAt = (speed: number): Windage =>
+    windage(envelope.radius, envelope.width, speed, gas, surround);
+  const wind = (speed: number): number => windageAt(speed).torque;
   return {
     bearings,
     lubricant,
     windage: wind,
+    windageAt,
     total: (speed) => bearings + lubricant(speed) + wind(speed),
   };
 }

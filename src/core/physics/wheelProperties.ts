@@ -48,23 +48,23 @@ export type WheelPropertiesOutcome =
 export const WHEEL_PROPERTY_FORMULAS: FormulaNotes<
   'annulusMass' | 'annulusSpin' | 'annulusTransverse' | 'ringOfBalls' | 'ringOfBolts' | 'stack'
 > = {
-  annulusMass: { formula: 'm = rho pi (R^2 - r^2) t', source: 'definition' },
-  annulusSpin: { formula: 'J_s = m (R^2 + r^2) / 2', source: 'standard tables of moments of inertia' },
+  annulusMass: { formula: 'm = ρ π (R² − r²) t', source: 'definition' },
+  annulusSpin: { formula: 'J_s = m (R² + r²) / 2', source: 'standard tables of moments of inertia' },
   annulusTransverse: {
-    formula: 'J_t = m (3 (R^2 + r^2) + t^2) / 12',
+    formula: 'J_t = m (3 (R² + r²) + t²) / 12',
     source: 'standard tables of moments of inertia',
   },
   ringOfBalls: {
     formula:
-      'J_s = N m (p^2 + d^2/10), J_t = N m (p^2/2 + d^2/10), m = rho pi d^3/6, N >= 3 (N = 2: mean of two diameters)',
+      'J_s = N m (p² + d²/10), J_t = N m (p²/2 + d²/10), m = ρ π d³/6, N ≥ 3 (N = 2: mean of two diameters)',
     source: 'parallel-axis theorem; sphere 2/5 m r^2',
   },
   ringOfBolts: {
-    formula: 'J_s = N m p^2, J_t = N m p^2 / 2, N >= 3 (N = 2: mean of two diameters)',
+    formula: 'J_s = N m p², J_t = N m p²/2, N ≥ 3 (N = 2: mean of two diameters)',
     source: 'parallel-axis theorem',
   },
   stack: {
-    formula: 'J_s = sum J_s,i ; z = sum m z / sum m ; J_t = sum (J_t,i + m_i (z_i - z)^2)',
+    formula: 'J_s = Σ J_s,i; z = Σ m z / Σ m; J_t = Σ (J_t,i + m_i (z_i − z)²)',
     source: 'parallel-axis theorem',
   },
 };

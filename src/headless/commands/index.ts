@@ -1,6 +1,7 @@
 import type { Command } from '../command';
 import { planCommand } from './plan';
+import { spinCommand } from './spin';
 import { weighCommand } from './weigh';
 
 /** Every command, in the order of the job. A new one is a file of its own and a line here. */
-export const COMMANDS: readonly Command[] = [weighCommand, planCommand];
+export const COMMANDS: readonly Command[] = [weighCommand, spinCommand, planCommand];

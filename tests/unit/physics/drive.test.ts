@@ -125,7 +125,6 @@ describe('drive', () => {
     const solver = new Solver(2);
     solver.absoluteTolerance = 1e-9;
     solver.relativeTolerance = 1e-10;
-    solver.maxStepSize = up.duration / 400;
     const end = solver.solve(
       (_t: number, y: number[]) => {
         driveFlows(drive, y[0]!, fullCurrent(drive, y[0]!), flows);

@@ -1,0 +1,84 @@
+import { arraySpinFigures, describeTrigger, type SpinReport, spinFigures, spinRig } from '../../core/physics';
+import type { Command } from '../command';
+
+/** What is wrong with a wheel, in words; empty for one that may be spun. */
+function failuresOf(report: SpinReport): readonly string[] {
+  const failures: string[] = [];
+  if (report.stress.spare < 0) failures.push('faster than its safe speed');
+  if (report.hold.kind === 'too fast') failures.push('its motor and battery cannot hold this speed');
+  else if (report.spinUp.kind === 'falls short')
+    failures.push('its motor and battery cannot reach this speed');
+  if (report.staticSafety < 1) failures.push('its bearings dent under the greatest load');
+  return failures;
+}
+
+const curveOf = (report: SpinReport) =>
+  report.spinUp.kind === 'reaches'
+    ? {
+        time: report.spinUp.spinUp.time,
+        speed: report.spinUp.spinUp.speed,
+        current: report.spinUp.spinUp.current,
+        batteryPower: report.spinUp.spinUp.batteryPower,
+      }
+    : undefined;
+
+/** Spin-up curves of all wheels, one row an instant; SI with the unit in the name. */
+function curvesAsCsv(reports: readonly SpinReport[]): string {
+  const rows = ['gyro,time_s,speed_rad_s,current_A,battery_power_W'];
+  reports.forEach((report, gyro) => {
+    const curve = curveOf(report);
+    if (!curve) return;
+    for (let i = 0; i < curve.time.length; i++) {
+      rows.push([gyro, curve.time[i], curve.speed[i], curve.current[i], curve.batteryPower[i]].join(','));
+    }
+  });
+  return `${rows.join('\r\n')}\r\n`;
+}
+
+export const spinCommand: Command = {
+  name: 'spin',
+  purpose: 'wheel stress and safe speed, balance, bearings, spin-up, power, run time, cautions',
+  example: 'spin public/rigs/strider.json --gimbal-power 12',
+  options: [
+    {
+      name: 'gimbal-power',
+      meaning: 'mean power of gimbal drives and legs, W, counted in the run time',
+      fallback: '0',
+    },
+  ],
+  reads: 'rig',
+  run: ({ rig, options }) => {
+    const gimbalPower = options.number('gimbal-power', 0, 1e6, 'W');
+    if (options.faults.length > 0) return { kind: 'refused', sentences: options.faults };
+    const spin = spinRig(rig, gimbalPower);
+    const sentences: string[] = [];
+    const reports: SpinReport[] = [];
+    spin.gyros.forEach((outcome, i) => {
+      if (outcome.kind === 'spun') reports.push(outcome.report);
+      else {
+        for (const fault of outcome.faults)
+          sentences.push(
+            `array.gyros[${i}].wheel.${fault.field}: ${fault.value}; it must be ${fault.allowed}.`,
+          );
+      }
+    });
+    if (sentences.length > 0) return { kind: 'refused', sentences };
+    const gyros = reports.map((report) => ({
+      name: report.gyro.name,
+      failures: failuresOf(report),
+      figures: Object.fromEntries(spinFigures(report).map(({ name, figures }) => [name, figures])),
+      stressLines: report.stress.lines,
+      joints: report.stress.joints,
+      contacts: report.stress.contacts,
+      spinUp: curveOf(report),
+    }));
+    const output = {
+      rig: rig.name,
+      gyros,
+      figures: arraySpinFigures(spin),
+      cautions: spin.cautions.map((caution) => ({ ...caution, because: describeTrigger(caution.trigger) })),
+    };
+    const kind = gyros.some(({ failures }) => failures.length > 0) ? 'failing' : 'done';
+    return { kind, output, csv: curvesAsCsv(reports) };
+  },
+};
