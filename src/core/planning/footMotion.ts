@@ -31,14 +31,18 @@ function timeInCycle(track: FootTrack, time: number): number {
   return Math.max(first, time - cycles * track.period);
 }
 
+/** The span that holds a time of the cycle; one that ends there has passed. By halving: a table may have thousands. */
 function spanAt(track: FootTrack, local: number): FootSpan {
   const slack = ON_BOUNDARY * track.period;
-  const spans = track.spans;
-  for (let i = 0; i < spans.length; i++) {
-    const span = spans[i] as FootSpan;
-    if (local < span.to - slack) return span;
+  const { spans } = track;
+  let low = 0;
+  let high = spans.length - 1;
+  while (low < high) {
+    const middle = (low + high) >> 1;
+    if (local < (spans[middle] as FootSpan).to - slack) high = middle;
+    else low = middle + 1;
   }
-  return spans[spans.length - 1] as FootSpan;
+  return spans[low] as FootSpan;
 }
 
 /** Whether the foot carries load just after an instant: down from touch-down until lift-off. */

@@ -9,8 +9,9 @@ import type { CompiledGait } from './gait';
 /** Share of its length a leg may be stretched to: a straight knee cannot follow a moving hip. */
 export const MOST_STRETCH = 0.999;
 
-/** Instants of a cycle at which reach is looked at. */
-const INSTANTS = 240;
+/** Instants of a cycle at which reach is looked at: at least so many, and within each span of a foot from two to eight. */
+const LEAST_INSTANTS = 240;
+const SPAN_INSTANTS = 4000;
 
 interface WorstReach {
   readonly leg: number;
@@ -20,13 +21,23 @@ interface WorstReach {
   readonly shortest: number;
 }
 
+/** Even instants of a cycle, and instants within each span: keyframes may lie close together. */
+function instantsOf(gait: CompiledGait): number[] {
+  const times = Array.from({ length: LEAST_INSTANTS }, (_, i) => (i * gait.period) / LEAST_INSTANTS);
+  const spans = gait.feet[0]?.spans ?? [];
+  const each = Math.max(2, Math.min(8, Math.floor(SPAN_INSTANTS / spans.length)));
+  for (const { from, to } of spans) {
+    for (let i = 0; i < each; i++) times.push(from + (i * (to - from)) / each);
+  }
+  return times;
+}
+
 /** Longest and shortest distance of any foot from its hip over a cycle, m. */
 export function reachOf(gait: CompiledGait): WorstReach {
   const body = new Float64Array(9);
   const foot = new Float64Array(9);
   let worst: WorstReach = { leg: 0, time: 0, longest: 0, shortest: Infinity };
-  for (let i = 0; i < INSTANTS; i++) {
-    const time = (i * gait.period) / INSTANTS;
+  for (const time of instantsOf(gait)) {
     bodyStateAt(gait.body, time, body);
     gait.hips.forEach((hip, leg) => {
       footStateAt(gait.feet[leg] as (typeof gait.feet)[number], time, foot);

@@ -1,5 +1,6 @@
 export * from './arrayAxes';
 export * from './bodyMotion';
+export * from './captureMargin';
 export * from './demand';
 export * from './disturbances';
 export * from './footMotion';

@@ -78,6 +78,19 @@ describe('keyframes', () => {
     }
   });
 
+  it('finds a foot out of reach between any two of two thousand keyframes', () => {
+    const place = (lift: number) => [0, 0.05, lift, 0, -0.05, 0];
+    const times = Array.from({ length: 2000 }, (_, k) => k * 0.25);
+    const feet = times.map((_, k) => place(k % 2 === 0 || k === 1999 ? 0 : 0.01));
+    const plain: KeyframeGait = { kind: 'keyframes', times, feet };
+    expect(compileGait(withGait(plain)).kind).toBe('compiled');
+    const far = feet.map((row, k) => (k === 1235 ? [0.3, 0.05, 0.01, 0, -0.05, 0] : row));
+    const outcome = compileGait(withGait({ ...plain, feet: far }));
+    expect(outcome.kind === 'refused' && outcome.refusals[0]!.sentence).toMatch(
+      /jobs\.gait\.feet: .*left foot 417.* mm from its hip at 309 s.*from 0.* mm to 320 mm from its hip/,
+    );
+  });
+
   it('goes out as a table and comes back the same', () => {
     const gait = readGait(SHUFFLE);
     expect(readGait(writeKeyframes(gait, ['Left', 'Right']))).toEqual(gait);
