@@ -1,11 +1,6 @@
 import { Matrix } from 'ml-matrix';
 import { describe, expect, it } from 'vitest';
-import {
-  createRollLoopWork,
-  NO_DISTURBANCE,
-  type RollLoopModel,
-  runRollLoop,
-} from '../../src/core/control/closedLoop';
+import { runRollLoop } from '../../src/core/control/closedLoop';
 import {
   createEstimatorWork,
   describeEstimator,
@@ -18,6 +13,7 @@ import { designGains } from '../../src/core/control/gainDesign';
 import { solveDiscreteLyapunov } from '../../src/core/control/linear/lyapunov';
 import type { RollTiltPlant } from '../../src/core/control/plantModels';
 import { createRandom, drawNormal } from '../../src/core/control/randomness';
+import { createRollLoopWork, NO_DISTURBANCE, type RollLoopModel } from '../../src/core/control/rollLoopModel';
 import {
   createSensorWork,
   expectMarkovAllan,

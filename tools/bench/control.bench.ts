@@ -29,7 +29,7 @@ const PLANT: RollTiltPlant = {
 };
 
 /** A pair driven by two bench servos, 1 kHz loop, every imperfection on. */
-function buildPair(): RollLoopModel {
+export function buildPair(): RollLoopModel {
   const estimator = { kind: 'complementary', sampleTime: 0.001, timeConstant: 1.5 } as const;
   const design = designGains({ plant: PLANT, estimator, law: 'feedback', hasTrim: true });
   if (design.kind !== 'designed') throw new Error('the benchmark rig has no gains');
@@ -80,7 +80,7 @@ function buildPair(): RollLoopModel {
   };
 }
 
-const KNOCKS: RollDisturbance = {
+export const KNOCKS: RollDisturbance = {
   step: 1,
   isCyclic: false,
   moment: new Float64Array(0),

@@ -24,7 +24,10 @@ export interface FeedbackGains {
   readonly trim: number;
 }
 
-/** A plan as columns, evenly spaced from time 0. */
+/**
+ * A plan as columns, evenly spaced from time 0. A cyclic one goes from its last sample on to its first: the
+ * closing sample is not repeated.
+ */
 export interface PlanColumns {
   /** s between two samples */
   readonly step: number;
@@ -65,14 +68,44 @@ export type Controller =
       /** 1/s, N*m per N*m*s of wheel momentum */ readonly speed: number;
     };
 
-const C = { gathered: 0, command: 1, rate: 2, tiltGathered: 3, time: 4 } as const;
+/* Kept between ticks, and from `lean` on what is handed in, worked with and handed out at each. */
+const C = {
+  gathered: 0,
+  command: 1,
+  rate: 2,
+  tiltGathered: 3,
+  time: 4,
+  lean: 5,
+  leanRate: 6,
+  momentum: 7,
+  tiltMin: 8,
+  tiltMax: 9,
+  dt: 10,
+  output: 11,
+  leanFactor: 12,
+  rateFactor: 13,
+  tiltFactor: 14,
+  place: 15,
+  read: 16,
+} as const;
+
+/** Where a caller that must make no garbage leaves its numbers for `tickController` and finds the command. */
+export const CONTROLLER_PORT = {
+  lean: C.lean,
+  leanRate: C.leanRate,
+  momentum: C.momentum,
+  tiltMin: C.tiltMin,
+  tiltMax: C.tiltMax,
+  dt: C.dt,
+  output: C.output,
+} as const;
 
 export interface ControllerWork {
   readonly state: Float64Array;
 }
 
 export function createControllerWork(): ControllerWork {
-  return { state: new Float64Array(5) };
+  return { state: new Float64Array(17) };
 }
 
 /** Starts afresh with the gimbal at a tilt. */
@@ -90,7 +123,7 @@ export function resetController(work: ControllerWork, tilt: number): void {
  * @param tiltMin,tiltMax rad; the command stops there and nothing winds up behind it
  * @param dt s, nominal time between ticks
  *
- * O(1), allocates nothing.
+ * O(1).
  */
 export function stepController(
   c: Controller,
@@ -103,115 +136,112 @@ export function stepController(
   dt: number,
 ): number {
   const s = work.state;
+  s[C.lean] = lean;
+  s[C.leanRate] = leanRate;
+  s[C.momentum] = momentum;
+  s[C.tiltMin] = tiltMin;
+  s[C.tiltMax] = tiltMax;
+  s[C.dt] = dt;
+  tickController(c, work);
+  return s[C.output]!;
+}
+
+/** The same with everything in and out at CONTROLLER_PORT of `work.state`. Allocates nothing. */
+export function tickController(c: Controller, work: ControllerWork): void {
+  const s = work.state;
   switch (c.kind) {
-    case 'pidTilt': {
-      const before = s[C.gathered]!;
-      s[C.gathered] = before + lean * dt;
-      const asked = c.kp * lean + c.ki * s[C.gathered]! + c.kd * leanRate;
-      const command = Math.min(Math.max(asked, tiltMin), tiltMax);
-      /* Stop gathering while it would push further past the limit. */
-      if ((asked - command) * c.ki * lean > 0) s[C.gathered] = before;
-      s[C.command] = command;
-      return command;
-    }
-    case 'pidTiltRate': {
-      const before = s[C.gathered]!;
-      s[C.gathered] = before + lean * dt;
-      s[C.rate] = c.kp * lean + c.ki * s[C.gathered]! + c.kd * leanRate;
-      const asked = s[C.command]! + s[C.rate]! * dt;
-      const command = Math.min(Math.max(asked, tiltMin), tiltMax);
-      if ((asked - command) * c.ki * lean > 0) s[C.gathered] = before;
-      s[C.command] = command;
-      return command;
-    }
+    case 'pidTilt':
+    case 'pidTiltRate':
+      stepPid(c, s);
+      return;
     case 'feedback':
-      return stepFeedback(c, s, lean, leanRate, 1, 1, 1, tiltMin, tiltMax, dt);
+      s[C.leanFactor] = 1;
+      s[C.rateFactor] = 1;
+      s[C.tiltFactor] = 1;
+      stepFeedback(c, s);
+      return;
     case 'planned':
-      return stepPlanned(c, s, lean, leanRate, tiltMin, tiltMax, dt);
+      stepPlanned(c, s);
+      return;
     case 'passive':
-      return s[C.command]!;
+      s[C.output] = s[C.command]!;
+      return;
     case 'reactionWheel':
-      return c.lean * lean + c.leanRate * leanRate + c.speed * momentum;
+      s[C.output] = c.lean * s[C.lean]! + c.leanRate * s[C.leanRate]! + c.speed * s[C.momentum]!;
   }
 }
 
-function stepFeedback(
-  g: FeedbackGains,
-  s: Float64Array,
-  lean: number,
-  leanRate: number,
-  leanFactor: number,
-  rateFactor: number,
-  tiltFactor: number,
-  tiltMin: number,
-  tiltMax: number,
-  dt: number,
-): number {
-  const rate =
-    leanFactor * g.lean * lean +
-    rateFactor * g.leanRate * leanRate +
-    tiltFactor * (g.tilt * s[C.command]! + g.trim * s[C.tiltGathered]!) +
-    g.tiltRate * s[C.rate]!;
-  s[C.rate] = rate;
-  const command = s[C.command]! + rate * dt;
-  const held = Math.min(Math.max(command, tiltMin), tiltMax);
-  s[C.command] = held;
-  if (held === command) s[C.tiltGathered]! += held * dt;
-  else s[C.rate] = 0;
-  return held;
+function stepPid(c: Extract<Controller, { kind: 'pidTilt' | 'pidTiltRate' }>, s: Float64Array): void {
+  const lean = s[C.lean]!;
+  const dt = s[C.dt]!;
+  const before = s[C.gathered]!;
+  s[C.gathered] = before + lean * dt;
+  let asked = c.kp * lean + c.ki * s[C.gathered]! + c.kd * s[C.leanRate]!;
+  if (c.kind === 'pidTiltRate') {
+    s[C.rate] = asked;
+    asked = s[C.command]! + asked * dt;
+  }
+  const command = Math.min(Math.max(asked, s[C.tiltMin]!), s[C.tiltMax]!);
+  /* Stop gathering while it would push further past the limit. */
+  if ((asked - command) * c.ki * lean > 0) s[C.gathered] = before;
+  s[C.command] = command;
+  s[C.output] = command;
 }
 
-function readColumn(column: Float64Array, place: number, isCyclic: boolean): number {
+function stepFeedback(g: FeedbackGains, s: Float64Array): void {
+  const dt = s[C.dt]!;
+  const rate =
+    s[C.leanFactor]! * g.lean * s[C.lean]! +
+    s[C.rateFactor]! * g.leanRate * s[C.leanRate]! +
+    s[C.tiltFactor]! * (g.tilt * s[C.command]! + g.trim * s[C.tiltGathered]!) +
+    g.tiltRate * s[C.rate]!;
+  s[C.rate] = rate;
+  const asked = s[C.command]! + rate * dt;
+  const held = Math.min(Math.max(asked, s[C.tiltMin]!), s[C.tiltMax]!);
+  s[C.command] = held;
+  if (held === asked) s[C.tiltGathered]! += held * dt;
+  else s[C.rate] = 0;
+  s[C.output] = held;
+}
+
+/* The column at s[place] samples, left in s[read]: straight between samples. */
+function readColumn(column: Float64Array, isCyclic: boolean, s: Float64Array): void {
   const n = column.length;
+  const place = s[C.place]!;
   const low = Math.floor(place);
   const part = place - low;
   if (isCyclic) {
     const i = ((low % n) + n) % n;
-    return column[i]! + part * (column[(i + 1) % n]! - column[i]!);
-  }
-  if (low < 0) return column[0]!;
-  if (low >= n - 1) return column[n - 1]!;
-  return column[low]! + part * (column[low + 1]! - column[low]!);
+    s[C.read] = column[i]! + part * (column[i + 1 === n ? 0 : i + 1]! - column[i]!);
+  } else if (low < 0) s[C.read] = column[0]!;
+  else if (low >= n - 1) s[C.read] = column[n - 1]!;
+  else s[C.read] = column[low]! + part * (column[low + 1]! - column[low]!);
 }
 
-function stepPlanned(
-  c: Extract<Controller, { kind: 'planned' }>,
-  s: Float64Array,
-  lean: number,
-  leanRate: number,
-  tiltMin: number,
-  tiltMax: number,
-  dt: number,
-): number {
+function stepPlanned(c: Extract<Controller, { kind: 'planned' }>, s: Float64Array): void {
   const plan = c.plan;
-  const place = s[C.time]! / plan.step;
-  s[C.time]! += dt;
-  const planned = readColumn(plan.tilt, place, plan.isCyclic);
-  let leanFactor = 1;
-  let rateFactor = 1;
-  let tiltFactor = 1;
+  s[C.leanFactor] = 1;
+  s[C.rateFactor] = 1;
+  s[C.tiltFactor] = 1;
   if (c.schedule !== undefined) {
     const rows = c.schedule.factors.length / 3;
-    const at = Math.floor(s[C.time]! / c.schedule.step);
+    const at = Math.floor(s[C.time]! / c.schedule.step + 1e-9);
     const row = plan.isCyclic ? at % rows : Math.min(at, rows - 1);
-    leanFactor = c.schedule.factors[3 * row]!;
-    rateFactor = c.schedule.factors[3 * row + 1]!;
-    tiltFactor = c.schedule.factors[3 * row + 2]!;
+    s[C.leanFactor] = c.schedule.factors[3 * row]!;
+    s[C.rateFactor] = c.schedule.factors[3 * row + 1]!;
+    s[C.tiltFactor] = c.schedule.factors[3 * row + 2]!;
   }
-  const awry = lean - readColumn(plan.lean, place, plan.isCyclic);
-  const awryRate = leanRate - readColumn(plan.leanRate, place, plan.isCyclic);
+  s[C.place] = s[C.time]! / plan.step;
+  s[C.time]! += s[C.dt]!;
+  readColumn(plan.lean, plan.isCyclic, s);
+  s[C.lean]! -= s[C.read]!;
+  readColumn(plan.leanRate, plan.isCyclic, s);
+  s[C.leanRate]! -= s[C.read]!;
+  readColumn(plan.tilt, plan.isCyclic, s);
+  const planned = s[C.read]!;
   /* The feedback's own tilt is what it adds to the plan, so re-centring means returning to the plan. */
-  const added = stepFeedback(
-    c.gains,
-    s,
-    awry,
-    awryRate,
-    leanFactor,
-    rateFactor,
-    tiltFactor,
-    tiltMin - planned,
-    tiltMax - planned,
-    dt,
-  );
-  return planned + added;
+  s[C.tiltMin]! -= planned;
+  s[C.tiltMax]! -= planned;
+  stepFeedback(c.gains, s);
+  s[C.output]! += planned;
 }

@@ -42,6 +42,8 @@ export interface EstimatorWork {
   readonly covariance: Float64Array;
   /** the gains in use: a complementary filter's gyro weight, or Kalman gains on roll and bias */
   readonly gain: Float64Array;
+  /** gyro, accelerometer's roll, true roll, true rate: what `updateEstimator` works on */
+  readonly input: Float64Array;
 }
 
 type Kalman = Extract<EstimatorModel, { kind: 'kalman' }>;
@@ -89,6 +91,7 @@ export function createEstimatorWork(model: EstimatorModel, roll = 0): EstimatorW
     estimate: new Float64Array(3),
     covariance: new Float64Array(3),
     gain: new Float64Array(2),
+    input: new Float64Array(4),
   };
   resetEstimator(model, work, roll);
   return work;
@@ -119,8 +122,8 @@ export function resetEstimator(model: EstimatorModel, work: EstimatorWork, roll:
  * @param accelRoll rad, roll as the accelerometer shows it
  * @param trueRoll,trueRate used by the ideal estimator alone
  *
- * O(1), allocates nothing. Source: textbook (Simon, Optimal State Estimation, ch. 5), covariance in Joseph-free
- * scalar form, safe because the measurement is scalar.
+ * O(1). Source: textbook (Simon, Optimal State Estimation, ch. 5), covariance in the plain scalar form, safe
+ * because the measurement is scalar.
  */
 export function stepEstimator(
   model: EstimatorModel,
@@ -130,10 +133,21 @@ export function stepEstimator(
   trueRoll: number,
   trueRate: number,
 ): void {
+  work.input[0] = gyro;
+  work.input[1] = accelRoll;
+  work.input[2] = trueRoll;
+  work.input[3] = trueRate;
+  updateEstimator(model, work);
+}
+
+/** The same with its numbers already in `work.input`. Allocates nothing. */
+export function updateEstimator(model: EstimatorModel, work: EstimatorWork): void {
   const e = work.estimate;
+  const gyro = work.input[0]!;
+  const accelRoll = work.input[1]!;
   if (model.kind === 'ideal') {
-    e[0] = trueRoll;
-    e[1] = trueRate;
+    e[0] = work.input[2]!;
+    e[1] = work.input[3]!;
     return;
   }
   const dt = model.sampleTime;

@@ -1,5 +1,6 @@
 import { chooseLeastDecay } from './gainDesign';
-import { createLoopBasis, LAW_GAINS, type LoopBasis, type LoopModel, prepareLoop } from './loopModel';
+import { createLoopBasis, type LoopBasis, prepareLoop } from './loopBasis';
+import { LAW_GAINS, type LoopModel } from './loopModel';
 import { countOutside, createLoopScorer, measureModulus } from './loopScore';
 
 export interface MapRequest extends LoopModel {

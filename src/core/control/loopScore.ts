@@ -1,13 +1,7 @@
 import type { EstimatorModel } from './estimators';
 import { findEigenvalues } from './linear/spectrum';
-import {
-  createLoopBasis,
-  evaluateLoopGain,
-  type Law,
-  type LoopBasis,
-  type LoopParts,
-  prepareLoop,
-} from './loopModel';
+import { createLoopBasis, evaluateLoopGain, type LoopBasis, type LoopParts, prepareLoop } from './loopBasis';
+import type { Law } from './loopModel';
 import type { RollTiltPlant } from './plantModels';
 
 /**

@@ -1,12 +1,6 @@
 import { findSpectralRadius } from './linear/spectrum';
-import {
-  buildClosedLoop,
-  createLoopBasis,
-  evaluateLoopGain,
-  fillLoopBasis,
-  type LoopModel,
-  prepareLoop,
-} from './loopModel';
+import { createLoopBasis, evaluateLoopGain, fillLoopBasis, prepareLoop } from './loopBasis';
+import { buildClosedLoop, type LoopModel } from './loopModel';
 
 /** How far a holding loop is from not holding. */
 export interface Margins {

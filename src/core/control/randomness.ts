@@ -16,7 +16,7 @@ const mix = (value: number): number => {
 /**
  * Names a stream: writes the state that belongs to (seed, run, channel) into `state`.
  *
- * @param state   4 words, overwritten
+ * @param state   5 words, overwritten: the generator's four and its last output
  * @param seed    any safe integer
  * @param run     0-based index of the run
  * @param channel one per independent source within a run (gyro, accelerometer, sea, tolerances)
@@ -39,15 +39,21 @@ export function seedRandom(state: RandomState, seed: number, run = 0, channel = 
 
 /** A new stream for (seed, run, channel). The only allocation of this file. */
 export function createRandom(seed: number, run = 0, channel = 0): RandomState {
-  const state = new Uint32Array(4);
+  const state = new Uint32Array(5);
   seedRandom(state, seed, run, channel);
   return state;
 }
 
 /** The next 32 bits as an unsigned integer. */
-export function drawBits(s: RandomState): number {
+export function drawBits(state: RandomState): number {
+  advance(state);
+  return state[4]!;
+}
+
+/* The output stays in the state: handed back as a number it would be boxed, being too large for a small integer. */
+function advance(s: RandomState): void {
   const scrambled = Math.imul(s[1]!, 5);
-  const result = Math.imul((scrambled << 7) | (scrambled >>> 25), 9) >>> 0;
+  s[4] = Math.imul((scrambled << 7) | (scrambled >>> 25), 9);
   const t = s[1]! << 9;
   s[2]! ^= s[0]!;
   s[3]! ^= s[1]!;
@@ -55,14 +61,14 @@ export function drawBits(s: RandomState): number {
   s[0]! ^= s[3]!;
   s[2]! ^= t;
   s[3] = (s[3]! << 11) | (s[3]! >>> 21);
-  return result;
 }
 
 /** Uniform in [0, 1), 53 bits. */
 export function drawUniform(state: RandomState): number {
-  const high = drawBits(state) >>> 5;
-  const low = drawBits(state) >>> 6;
-  return (high * 67108864 + low) / 9007199254740992;
+  advance(state);
+  const high = state[4]! >>> 5;
+  advance(state);
+  return (high * 67108864 + (state[4]! >>> 6)) / 9007199254740992;
 }
 
 /** Uniform whole number in [0, count), without bias (Lemire, ACM TOMACS 29, 2019, by rejection). */
@@ -94,32 +100,53 @@ const layerRatio = new Float64Array(LAYERS);
   for (let i = 0; i < LAYERS; i++) layerRatio[i] = layerX[i + 1]! / layerX[i]!;
 }
 
+/** A standard normal draw (mean 0, variance 1). */
+export function drawNormal(state: RandomState): number {
+  fillNormal(state, single, 0);
+  return single[0]!;
+}
+
+const single = new Float64Array(1);
+
 /**
- * A standard normal draw (mean 0, variance 1).
+ * A standard normal draw into out[at].
  *
  * Ziggurat with a separate draw for the layer (Doornik, An improved ziggurat method to generate normal
  * random samples, 2005), which avoids the correlation of the one-draw form. Allocates nothing.
  */
-export function drawNormal(state: RandomState): number {
+export function fillNormal(state: RandomState, out: Float64Array, at: number): void {
   for (;;) {
-    const u = (drawBits(state) + 0.5) / 2147483648 - 1;
-    const layer = drawBits(state) & (LAYERS - 1);
-    if (Math.abs(u) < layerRatio[layer]!) return u * layerX[layer]!;
-    if (layer === 0) return drawTail(state, u < 0);
+    advance(state);
+    const u = (state[4]! + 0.5) / 2147483648 - 1;
+    advance(state);
+    const layer = state[4]! & (LAYERS - 1);
     const x = u * layerX[layer]!;
+    if (Math.abs(u) < layerRatio[layer]!) {
+      out[at] = x;
+      return;
+    }
+    if (layer === 0) {
+      fillTail(state, out, at);
+      if (u < 0) out[at] = -out[at]!;
+      return;
+    }
     const f0 = Math.exp(-0.5 * (layerX[layer]! * layerX[layer]! - x * x));
     const f1 = Math.exp(-0.5 * (layerX[layer + 1]! * layerX[layer + 1]! - x * x));
-    if (f1 + drawUniform(state) * (f0 - f1) < 1) return x;
+    if (f1 + drawUniform(state) * (f0 - f1) < 1) {
+      out[at] = x;
+      return;
+    }
   }
 }
 
-/** A draw from beyond the last layer (Marsaglia, 1964). */
-function drawTail(state: RandomState, negative: boolean): number {
-  let x: number;
-  let y: number;
-  do {
-    x = -Math.log(1 - drawUniform(state)) / TAIL_START;
-    y = -Math.log(1 - drawUniform(state));
-  } while (y + y < x * x);
-  return negative ? -(TAIL_START + x) : TAIL_START + x;
+/* A draw from beyond the last layer (Marsaglia, 1964). */
+function fillTail(state: RandomState, out: Float64Array, at: number): void {
+  for (;;) {
+    const x = -Math.log(1 - drawUniform(state)) / TAIL_START;
+    const y = -Math.log(1 - drawUniform(state));
+    if (y + y >= x * x) {
+      out[at] = TAIL_START + x;
+      return;
+    }
+  }
 }

@@ -2,7 +2,7 @@ import type { Control, Sensing, Servo } from '../rig';
 import type { Controller } from './controllers';
 import type { Law } from './loopModel';
 import type { RollTiltPlant } from './plantModels';
-import { summariseServo } from './servoModel';
+import { summariseServo } from './servoMotion';
 
 /** The body and array of a rig about one line, as physics works them out. */
 export interface LoopBody {

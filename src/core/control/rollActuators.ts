@@ -2,11 +2,13 @@ import {
   createServoWork,
   readCommand,
   resetServo,
+  SERVO_INPUT,
   SERVO_STATE,
+  SERVO_TARGET,
   type ServoModel,
   type ServoWork,
-  stepServo,
 } from './servoModel';
+import { advanceServo } from './servoMotion';
 
 /** One servo-driven gimbal, or a geared pair taken as one. */
 export interface ServoGimbal {
@@ -65,8 +67,18 @@ export type RollActuator =
       readonly noLoadMomentum: number;
     };
 
-/** Where the body's quantities stand. */
-export const BODY = { roll: 0, rate: 1 } as const;
+/** Where the body's quantities stand: its motion, then what a plant step is given, then scratch. */
+export const BODY = {
+  roll: 0,
+  rate: 1,
+  /** kg*m^2 */ inertia: 2,
+  /** N*m*s/rad, taken implicitly */ damping: 3,
+  /** N*m at the middle of the step, damping left out */ moment: 4,
+  /** s */ dt: 5,
+  /** N*m*s given to the body in the step */ impulse: 6,
+} as const;
+
+export const BODY_LENGTH = 7;
 
 export interface ActuatorWork {
   readonly servos: readonly ServoWork[];
@@ -126,43 +138,30 @@ export function resetActuator(actuator: RollActuator, w: ActuatorWork, tilt: num
 /**
  * One plant step: gimbals or wheel and the body's roll together.
  *
- * @param body roll, rate; changed in place
- * @param moment N*m on the body at the middle of the step, damping left out
+ * @param body see BODY; roll and rate are changed in place, the rest is read
  *
- * Momentum passes between array and body exactly: the body gets minus the change of h sin(tilt).
+ * Momentum passes between array and body exactly: the body gets minus the change of h sin(tilt). Allocates
+ * nothing: all numbers travel in typed arrays.
  */
-export function advanceActuator(
-  actuator: RollActuator,
-  w: ActuatorWork,
-  body: Float64Array,
-  inertia: number,
-  damping: number,
-  moment: number,
-  dt: number,
-): void {
-  if (actuator.kind === 'servo') advanceServos(actuator.gimbals, w, body, inertia, damping, moment, dt);
-  else if (actuator.kind === 'free') advanceFree(actuator, w, body, inertia, damping, moment, dt);
-  else advanceWheel(actuator, w, body, inertia, damping, moment, dt);
+export function advanceActuator(actuator: RollActuator, w: ActuatorWork, body: Float64Array): void {
+  if (actuator.kind === 'servo') advanceServos(actuator.gimbals, w, body);
+  else if (actuator.kind === 'free') advanceFree(actuator, w, body);
+  else advanceWheel(actuator, w, body);
 }
 
-function moveBody(body: Float64Array, inertia: number, damping: number, impulse: number, dt: number): void {
+function moveBody(body: Float64Array): void {
+  const dt = body[BODY.dt]!;
   const before = body[BODY.rate]!;
-  const half = 0.5 * dt * damping;
-  const after = ((inertia - half) * before + impulse) / (inertia + half);
+  const half = 0.5 * dt * body[BODY.damping]!;
+  const inertia = body[BODY.inertia]!;
+  const after = ((inertia - half) * before + body[BODY.impulse]!) / (inertia + half);
   body[BODY.rate] = after;
   body[BODY.roll]! += 0.5 * dt * (before + after);
 }
 
-function advanceServos(
-  gimbals: readonly ServoGimbal[],
-  w: ActuatorWork,
-  body: Float64Array,
-  inertia: number,
-  damping: number,
-  moment: number,
-  dt: number,
-): void {
+function advanceServos(gimbals: readonly ServoGimbal[], w: ActuatorWork, body: Float64Array): void {
   const rate = body[BODY.rate]!;
+  const dt = body[BODY.dt]!;
   let given = 0;
   for (let i = 0; i < gimbals.length; i++) {
     const g = gimbals[i]!;
@@ -170,7 +169,9 @@ function advanceServos(
     const s = servo.state;
     const before = w.tilt[i]!;
     const held = w.momentum[i]!;
-    stepServo(g.servo, servo, held * Math.cos(before) * rate, dt);
+    s[SERVO_INPUT.load] = held * Math.cos(before) * rate;
+    s[SERVO_INPUT.dt] = dt;
+    advanceServo(g.servo, servo);
     const after = s[SERVO_STATE.tilt]!;
     const sine = Math.sin(after);
     let momentum = held;
@@ -189,19 +190,16 @@ function advanceServos(
     w.heat[i] = s[SERVO_STATE.heat]!;
     w.limited[i] = s[SERVO_STATE.saturatedTime]!;
   }
-  moveBody(body, inertia, damping, dt * moment - given, dt);
+  body[BODY.impulse] = dt * body[BODY.moment]! - given;
+  moveBody(body);
 }
 
 /* Gyroscopic coupling by the implicit midpoint rule: it turns momentum to and fro without adding energy. */
-function advanceFree(
-  a: Extract<RollActuator, { kind: 'free' }>,
-  w: ActuatorWork,
-  body: Float64Array,
-  inertia: number,
-  damping: number,
-  moment: number,
-  dt: number,
-): void {
+function advanceFree(a: Extract<RollActuator, { kind: 'free' }>, w: ActuatorWork, body: Float64Array): void {
+  const inertia = body[BODY.inertia]!;
+  const damping = body[BODY.damping]!;
+  const moment = body[BODY.moment]!;
+  const dt = body[BODY.dt]!;
   const p = body[BODY.rate]!;
   const q = w.rate[0]!;
   const middle = w.tilt[0]! + 0.5 * dt * q;
@@ -235,13 +233,12 @@ function advanceWheel(
   a: Extract<RollActuator, { kind: 'wheel' }>,
   w: ActuatorWork,
   body: Float64Array,
-  inertia: number,
-  damping: number,
-  moment: number,
-  dt: number,
 ): void {
+  const dt = body[BODY.dt]!;
   const line = w.servos[0]!;
-  const asked = readCommand(a.line, line, dt);
+  line.state[SERVO_INPUT.dt] = dt;
+  readCommand(a.line, line);
+  const asked = line.state[SERVO_TARGET]!;
   line.state[SERVO_STATE.time]! += dt;
   const share = a.lag > 0 ? -Math.expm1(-dt / a.lag) : 1;
   const before = w.wheel[1]!;
@@ -256,7 +253,8 @@ function advanceWheel(
   w.wheel[0]! += dt * torque;
   w.torque[0] = torque;
   w.heat[0]! += torque * torque * dt;
-  moveBody(body, inertia, damping, dt * (moment - torque), dt);
+  body[BODY.impulse] = dt * (body[BODY.moment]! - torque);
+  moveBody(body);
 }
 
 /**

@@ -1,6 +1,6 @@
 import type { Sensing } from '../rig';
 import type { EstimatorModel } from './estimators';
-import { drawNormal, type RandomState } from './randomness';
+import { drawNormal, fillNormal, type RandomState } from './randomness';
 
 /**
  * Rate gyro and accelerometer on the body, sampled by the loop.
@@ -124,12 +124,19 @@ export interface SensorWork {
   readonly reading: Float64Array;
   /** per-sample figures worked out once: gyro sigma, accel sigma, drift decay, drift kick */
   readonly scale: Float64Array;
+  /** roll, roll rate, roll acceleration, time: what `takeReading` works on; then one normal draw */
+  readonly input: Float64Array;
   readonly random: RandomState;
 }
 
 /** The only allocation. `random` is this sensor's own stream. */
 export function createSensorWork(model: SensorModel, random: RandomState): SensorWork {
-  const work = { reading: new Float64Array(4), scale: new Float64Array(4), random };
+  const work = {
+    reading: new Float64Array(4),
+    scale: new Float64Array(4),
+    input: new Float64Array(5),
+    random,
+  };
   resetSensor(model, work);
   return work;
 }
@@ -159,7 +166,7 @@ export function resetSensor(model: SensorModel, work: SensorWork): void {
  * @param rollAcceleration rad/s^2, mean since the last sample: the filter inside the sensor
  * @param time s, for the vibration's phase; sampling it is what folds it into the loop
  *
- * O(1), allocates nothing.
+ * O(1).
  */
 export function readSensors(
   m: SensorModel,
@@ -169,16 +176,37 @@ export function readSensors(
   rollAcceleration: number,
   time: number,
 ): void {
+  work.input[0] = roll;
+  work.input[1] = rollRate;
+  work.input[2] = rollAcceleration;
+  work.input[3] = time;
+  takeReading(m, work);
+}
+
+/** The same with its numbers already in `work.input`. Allocates nothing. */
+export function takeReading(m: SensorModel, work: SensorWork): void {
   const r = work.reading;
   const s = work.scale;
   const random = work.random;
+  const input = work.input;
+  const roll = input[0]!;
+  const rollRate = input[1]!;
   let gyro = rollRate + m.gyroBias + r[READING.drift]!;
-  if (s[3]! > 0) r[READING.drift] = s[2]! * r[READING.drift]! + s[3]! * drawNormal(random);
-  if (s[0]! > 0) gyro += s[0]! * drawNormal(random);
-  let lateral = m.gravity * Math.sin(roll) - m.height * rollAcceleration + m.accelBias;
-  if (s[1]! > 0) lateral += s[1]! * drawNormal(random);
+  if (s[3]! > 0) {
+    fillNormal(random, input, 4);
+    r[READING.drift] = s[2]! * r[READING.drift]! + s[3]! * input[4]!;
+  }
+  if (s[0]! > 0) {
+    fillNormal(random, input, 4);
+    gyro += s[0]! * input[4]!;
+  }
+  let lateral = m.gravity * Math.sin(roll) - m.height * input[2]! + m.accelBias;
+  if (s[1]! > 0) {
+    fillNormal(random, input, 4);
+    lateral += s[1]! * input[4]!;
+  }
   if (m.vibration.frequency > 0) {
-    const phase = m.vibration.frequency * time;
+    const phase = m.vibration.frequency * input[3]!;
     gyro += m.vibration.rateAmplitude * Math.cos(phase);
     /* the accelerometer shakes with the rate's derivative */
     lateral += m.vibration.accelAmplitude * Math.sin(phase);

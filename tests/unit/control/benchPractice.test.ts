@@ -1,4 +1,8 @@
 import { describe, expect, it } from 'vitest';
+import { runRollLoop } from '../../../src/core/control/closedLoop';
+import type { Controller } from '../../../src/core/control/controllers';
+import { findRoots } from '../../../src/core/control/linear/spectrum';
+import { measureDecay } from '../../../src/core/control/margins';
 import {
   createRollLoopWork,
   createRollRecord,
@@ -6,11 +10,7 @@ import {
   RECORD,
   type RollLoopModel,
   type RollOutcome,
-  runRollLoop,
-} from '../../../src/core/control/closedLoop';
-import type { Controller } from '../../../src/core/control/controllers';
-import { findRoots } from '../../../src/core/control/linear/spectrum';
-import { measureDecay } from '../../../src/core/control/margins';
+} from '../../../src/core/control/rollLoopModel';
 import { expandPidTilt } from '../../../src/core/control/routh';
 import { NO_VIBRATION } from '../../../src/core/control/sensorModel';
 import { expectClose } from '../../support/closeTo';

@@ -1,4 +1,12 @@
 import { describe, expect, it } from 'vitest';
+import { runRollLoop } from '../../../src/core/control/closedLoop';
+import type { Controller } from '../../../src/core/control/controllers';
+import { findEigenvalues } from '../../../src/core/control/linear/spectrum';
+import { buildController, type Law, type LoopModel } from '../../../src/core/control/loopModel';
+import { findDelayBorder, judgeLoop, measureDecay } from '../../../src/core/control/margins';
+import type { RollTiltPlant } from '../../../src/core/control/plantModels';
+import { buildFreeGimbal, judgeFreeGimbal } from '../../../src/core/control/plantModels';
+import type { RollActuator } from '../../../src/core/control/rollActuators';
 import {
   createRollLoopWork,
   createRollRecord,
@@ -7,15 +15,7 @@ import {
   type RollLoopModel,
   type RollOutcome,
   type RollRunStart,
-  runRollLoop,
-} from '../../../src/core/control/closedLoop';
-import type { Controller } from '../../../src/core/control/controllers';
-import { findEigenvalues } from '../../../src/core/control/linear/spectrum';
-import { buildController, type Law, type LoopModel } from '../../../src/core/control/loopModel';
-import { findDelayBorder, judgeLoop, measureDecay } from '../../../src/core/control/margins';
-import type { RollTiltPlant } from '../../../src/core/control/plantModels';
-import { buildFreeGimbal, judgeFreeGimbal } from '../../../src/core/control/plantModels';
-import type { RollActuator } from '../../../src/core/control/rollActuators';
+} from '../../../src/core/control/rollLoopModel';
 import { NO_VIBRATION, type SensorModel } from '../../../src/core/control/sensorModel';
 import type { ServoModel } from '../../../src/core/control/servoModel';
 import { expectClose } from '../../support/closeTo';

@@ -1,13 +1,12 @@
 import { describe, expect, it } from 'vitest';
 import {
   createServoWork,
-  meanServoTorque,
   resetServo,
   SERVO_STATE,
   type ServoModel,
   sendCommand,
-  stepServo,
 } from '../../../src/core/control/servoModel';
+import { meanServoTorque, stepServo } from '../../../src/core/control/servoMotion';
 import { expectClose } from '../../support/closeTo';
 
 const STRONG: ServoModel = {
