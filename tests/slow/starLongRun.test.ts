@@ -3,8 +3,8 @@ import { describe, it } from 'vitest';
 import { conservedQuantities } from '../../src/core/physics/conserved';
 import type { StarFooting } from '../../src/core/physics/footing';
 import { type StarColumns, simulateExactly, simulateFree } from '../../src/core/physics/freeMotion';
-import { createStarWork } from '../../src/core/physics/starDynamics';
 import { compileStar, type StarDescription } from '../../src/core/physics/starModel';
+import { createStarWork } from '../../src/core/physics/starWork';
 import { expectClose } from '../support/closeTo';
 import { createRandom, randomStar, randomStart } from '../unit/physics/randomStar';
 

@@ -6,8 +6,9 @@
 import { PerformanceObserver } from 'node:perf_hooks';
 import { simulateExactly, startState } from '../../src/core/physics/freeMotion';
 import { createRk4Work, type Derivative, stepRk4 } from '../../src/core/physics/integrators';
-import { createStarWork, starDerivative } from '../../src/core/physics/starDynamics';
+import { starDerivative } from '../../src/core/physics/starDynamics';
 import { compileStar } from '../../src/core/physics/starModel';
+import { createStarWork } from '../../src/core/physics/starWork';
 import type { Row } from './row';
 import { type Engine, openCannonEngine, openMujocoEngine, openRapierEngine } from './starPeers';
 import { benchStar, benchStart } from './starRig';

@@ -19,8 +19,8 @@ import {
   unit3,
   type Vec3,
 } from './spatial';
-import type { StarWork } from './starDynamics';
 import type { StarModel } from './starModel';
+import type { StarWork } from './starWork';
 
 export interface StarConserved {
   readonly mass: number;

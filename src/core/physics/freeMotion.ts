@@ -1,7 +1,8 @@
 /** Free or prescribed motion of a star from a start, sampled into columns. For tests, pictures and the command line. */
 import { createRk4Work, integrateAdaptively, stepRk4 } from './integrators';
-import { createStarWork, type StarWork, settleState, starDerivative } from './starDynamics';
+import { settleState, starDerivative } from './starDynamics';
 import { compileStar, restState, type StarDescription, type StarModel } from './starModel';
+import { createStarWork, type StarWork } from './starWork';
 
 /** What differs from rest at the start. Arrays are one entry per gyro. */
 export interface StarStart {

@@ -8,118 +8,26 @@
  * Source: Kane and Levinson, Dynamics: Theory and Applications (1985), ch. 6.
  */
 import {
-  angleOf,
   constant3,
   type Dual,
   type Dual3,
   difference3,
   dual,
-  exponential,
-  hyperbolicTangent,
   inner3,
-  magnitude,
   minus,
   outer3,
-  over,
   plus,
-  root,
   scaled,
   scaled3,
   sum3,
-  times,
   turned3,
-  zero,
   zero3,
 } from './dual';
-import { rightingArm, rightingSlope } from './footingFloat';
-import { dragSoftening } from './losses';
+import { type DualBase, placeDualBase } from './dualBase';
+import { passiveGimbal, waterWrench, wheelDrag } from './dualForces';
 import { type Sym3, unit3, type Vec3 } from './spatial';
-import type { StarWork } from './starDynamics';
 import type { StarModel } from './starModel';
-
-/** The base at a state: world axes in body components, motion, and partial velocities of O for each base speed. */
-export interface DualBase {
-  readonly up: Dual3;
-  readonly gravity: Dual3;
-  readonly rate: Dual3;
-  readonly rateRate: Dual3;
-  readonly velocity: Dual3;
-  readonly acceleration: Dual3;
-  readonly turns: readonly Dual3[];
-  readonly moves: readonly Dual3[];
-}
-
-const units: readonly Dual3[] = [constant3([1, 0, 0]), constant3([0, 1, 0]), constant3([0, 0, 1])];
-
-/** World directions in body components: rows of the rotation. */
-function worldAxes(model: StarModel, x: readonly Dual[]): readonly [Dual3, Dual3, Dual3] {
-  const pose = model.footing.pose;
-  if (pose === 'none') return [units[0]!, units[1]!, units[2]!];
-  if (pose === 'angle') {
-    const axis = constant3(model.footing.axis);
-    const back = scaled(x[0]!, -1);
-    return [turned3(units[0]!, axis, back), turned3(units[1]!, axis, back), turned3(units[2]!, axis, back)];
-  }
-  const q = x.slice(0, 4);
-  const size = q.reduce((sum, c) => plus(sum, times(c, c)), zero);
-  const v: Dual3 = [q[1]!, q[2]!, q[3]!];
-  const w = q[0]!;
-  // R^T e = e - 2 w (v x e)/|q|^2 + 2 v x (v x e)/|q|^2
-  const back = (e: Dual3): Dual3 => {
-    const t = outer3(v, e);
-    const turn = difference3(outer3(v, t), scaled3(t, w));
-    return sum3(e, scaled3(turn, over(dual(2), size)));
-  };
-  return [back(units[0]!), back(units[1]!), back(units[2]!)];
-}
-
-/** Motion of the base from its speeds and their rates. Accelerations are inertial. */
-export function placeDualBase(
-  model: StarModel,
-  work: StarWork,
-  x: readonly Dual[],
-  accelerations: readonly Dual[],
-): DualBase {
-  const footing = model.footing;
-  const [ex, ey, up] = worldAxes(model, x);
-  const G = model.gravity_W;
-  const gravity = sum3(sum3(scaled3(ex, dual(G[0]!)), scaled3(ey, dual(G[1]!))), scaled3(up, dual(G[2]!)));
-  const nu = x.slice(model.baseSpeedAt, model.baseSpeedAt + footing.speeds);
-  const dnu = accelerations.slice(0, footing.speeds);
-  if (footing.pose === 'free') {
-    const rate: Dual3 = [nu[0]!, nu[1]!, nu[2]!];
-    const velocity: Dual3 = [nu[3]!, nu[4]!, nu[5]!];
-    const acceleration = sum3([dnu[3]!, dnu[4]!, dnu[5]!], outer3(rate, velocity));
-    return {
-      up,
-      gravity,
-      rate,
-      rateRate: [dnu[0]!, dnu[1]!, dnu[2]!],
-      velocity,
-      acceleration,
-      turns: [...units, zero3, zero3, zero3],
-      moves: [zero3, zero3, zero3, ...units],
-    };
-  }
-  const turns = footing.pose === 'none' ? [] : footing.pose === 'angle' ? [constant3(footing.axis)] : units;
-  const combine = (of: readonly Dual[]): Dual3 =>
-    turns.reduce((sum, turn, k) => sum3(sum, scaled3(turn, of[k]!)), zero3);
-  const rate = combine(nu);
-  const rateRate = combine(dnu);
-  const P = constant3(work.place.planted);
-  const P1 = constant3(work.place.planted, 3);
-  const P2 = constant3(work.place.planted, 6);
-  const rolling = (w: Dual3): Dual3 => scaled3(outer3(w, up), dual(footing.radius));
-  const moves = turns.map((turn) => sum3(outer3(P, turn), rolling(turn)));
-  // O sits at (centre or planted point) minus P; the centre of a rolling body moves at r w x n, n fixed in the world.
-  const away = sum3(
-    sum3(outer3(rateRate, P), outer3(rate, outer3(rate, P))),
-    sum3(scaled3(outer3(rate, P1), dual(2)), P2),
-  );
-  const acceleration = difference3(rolling(rateRate), away);
-  const velocity = difference3(rolling(rate), sum3(outer3(rate, P), P1));
-  return { up, gravity, rate, rateRate, velocity, acceleration, turns, moves };
-}
+import type { StarWork } from './starWork';
 
 const symmetricTimes = (S: Sym3, a: Dual3): Dual3 => [
   plus(plus(scaled(a[0], S[0]), scaled(a[1], S[3])), scaled(a[2], S[4])),
@@ -209,71 +117,6 @@ function askGyro(
   asked.moment = sum3(asked.moment, sum3(aboutPivot, outer3(pivot, force)));
   const reflected = scaled(accelerations[nb + i]!, model.reflectedInertia[i]!);
   return [plus(inner3(axis, aboutPivot), reflected), inner3(spin, wheelMoment)];
-}
-
-/** Torque a gimbal's spring, damper and friction give. */
-function passiveGimbal(model: StarModel, i: number, tilt: Dual, rate: Dual): Dual {
-  const s = model.spring;
-  let torque = plus(scaled(minus(tilt, dual(s[3 * i + 1]!)), -s[3 * i]!), scaled(rate, -s[3 * i + 2]!));
-  if (model.hasFriction) {
-    const f = model.friction.subarray(5 * i, 5 * i + 5);
-    const x = scaled(rate, 1 / f[3]!);
-    const raise = scaled(exponential(scaled(times(x, x), -1)), f[1]! - f[0]!);
-    const level = plus(dual(f[0]!), raise);
-    torque = minus(torque, times(level, hyperbolicTangent(scaled(rate, 1 / f[4]!))));
-    torque = minus(torque, scaled(rate, f[2]!));
-  }
-  return torque;
-}
-
-function wheelDrag(model: StarModel, i: number, speed: Dual): Dual {
-  const d = model.drag.subarray(3 * i, 3 * i + 3);
-  const constant = scaled(hyperbolicTangent(scaled(speed, 1 / dragSoftening)), -d[0]!);
-  return minus(minus(constant, scaled(speed, d[1]!)), scaled(times(speed, magnitude(speed)), d[2]!));
-}
-
-/** The water's moment about O and force; the rig's weight at rest taken out of it. */
-function waterWrench(model: StarModel, base: DualBase, x: readonly Dual[]): readonly [Dual3, Dual3] {
-  const floats = model.footing.floats!;
-  const rest = model.restRig;
-  const G = model.gravity_W;
-  const weight = rest[0]! * Math.sqrt(G[0]! ** 2 + G[1]! ** 2 + G[2]! ** 2);
-  const axis = constant3(model.footing.axis);
-  const p = inner3(axis, base.rate);
-  const damping = minus(
-    scaled(p, -floats.linearDamping),
-    scaled(times(p, magnitude(p)), floats.quadraticDamping),
-  );
-  const [nx, ny, nz] = base.up;
-  const roll = angleOf(ny, nz);
-  const arm = dual(
-    rightingArm(floats.righting, roll.value),
-    rightingSlope(floats.righting, roll.value) * roll.slope,
-  );
-  const righting = scaled(arm, -weight);
-  const force = scaled3(base.gravity, dual(-rest[0]!));
-  const weightMoment = outer3(constant3(rest, 1), base.gravity);
-  let moment = difference3(scaled3(axis, damping), weightMoment);
-  if (model.footing.pose !== 'free') return [sum3(moment, [righting, zero, zero]), force];
-  // Gradients of roll and pitch angle with respect to turning the body.
-  const level = plus(times(ny, ny), times(nz, nz));
-  const rollGradient: Dual3 = [
-    dual(1),
-    scaled(over(times(nx, ny), level), -1),
-    scaled(over(times(nx, nz), level), -1),
-  ];
-  const cosPitch = root(level);
-  const pitchGradient: Dual3 = [zero, over(nz, cosPitch), scaled(over(ny, cosPitch), -1)];
-  const pitching = scaled(nx, weight * floats.pitchHeight);
-  moment = sum3(moment, scaled3(rollGradient, righting));
-  moment = sum3(moment, scaled3(pitchGradient, pitching));
-  moment = sum3(moment, [zero, scaled(base.rate[1], -floats.pitchDamping), zero]);
-  const at = constant3(model.footing.point);
-  const rise = minus(plus(x[6]!, inner3(base.up, at)), dual(model.footing.point[2]!));
-  const climb = inner3(base.up, sum3(base.velocity, outer3(base.rate, at)));
-  const lift = minus(scaled(rise, -floats.heaveStiffness), scaled(climb, floats.heaveDamping));
-  const push = scaled3(base.up, lift);
-  return [sum3(moment, outer3(at, push)), sum3(force, push)];
 }
 
 /**

@@ -9,8 +9,9 @@
 import { inverse, Matrix } from 'ml-matrix';
 import { type Dual, dual } from './dual';
 import { inverseDynamicsOver } from './inverseDynamics';
-import { type StarWork, starAcceleration } from './starDynamics';
+import { starAcceleration } from './starDynamics';
 import { gimbalIsDynamic, type StarModel } from './starModel';
+import type { StarWork } from './starWork';
 
 export interface LinearStar {
   /** N x N: rate of a small change per small change. */

@@ -2,8 +2,8 @@
 import type { FirmFooting } from './footing';
 import { footingWrench, inverseDynamics } from './inverseDynamics';
 import type { Vec3 } from './spatial';
-import type { StarWork } from './starDynamics';
 import type { StarModel } from './starModel';
+import type { StarWork } from './starWork';
 
 export interface SupportReaction {
   /** Force of the ground on the rig, body components, N. */

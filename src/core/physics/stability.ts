@@ -5,8 +5,9 @@ import { tippingEdge } from './footing';
 import { type LinearStar, linearise } from './linearisation';
 import { supportMargin } from './reactions';
 import { cross3, dot3, norm3, scale3, subtract3, type Vec3 } from './spatial';
-import { createStarWork, type StarWork, starAcceleration } from './starDynamics';
+import { starAcceleration } from './starDynamics';
 import { compileStar, restState, type StarDescription, type StarModel, standardGravity } from './starModel';
+import { createStarWork, type StarWork } from './starWork';
 
 /** One mode of motion: a real root, or a pair of complex ones told once. */
 export interface Mode {

@@ -5,117 +5,11 @@
  * Source: Featherstone, Rigid Body Dynamics Algorithms (2008), ch. 7; gyrostat momentum per the array law.
  */
 import { axialMomentum, placeSpinAxis } from './arrayLaw';
-import {
-  addWaterWrench,
-  type BasePlace,
-  createBasePlace,
-  floatHeight,
-  placeBase,
-  placePoseRate,
-} from './footingMotion';
+import { solveBase } from './baseSolve';
+import { addWaterWrench, floatHeight, placeBase, placePoseRate } from './footingMotion';
 import { gimbalFrictionTorque, wheelDragTorque } from './losses';
 import { gimbalIsDynamic, gimbalIsLocked, type StarModel } from './starModel';
-
-/** Scratch of one caller, and the inputs that vary in time besides the effort. */
-export interface StarWork {
-  readonly place: BasePlace;
-  /**
-   * 28, the base about O as its legs stand now, body components: mass, first moment 3, inertia 6, relative linear
-   * momentum 3 (the rate of the first moment), relative angular momentum 3, then the rates of the inertia 6, of
-   * the linear momentum 3 and of the angular momentum 3. Set by setMovingBase.
-   */
-  readonly base: Float64Array;
-  /** Wrench on the base: effort plus footing; moment about O, then force. */
-  readonly wrench: Float64Array;
-  /** 6, rate of the base velocity's components, gravity taken off. */
-  readonly drive: Float64Array;
-  readonly spin: Float64Array;
-  /** 6n: gimbal inertia times hinge motion. */
-  readonly hingeForce: Float64Array;
-  /** n: what is left to accelerate the hinge; later the tilt accelerations. */
-  readonly hingeRest: Float64Array;
-  /** n: rate of each wheel's momentum along its spin axis, N*m; for held wheels filled after the solve. */
-  readonly momentumRate: Float64Array;
-  /** 36 and 6: system left for the base, and its right side. */
-  readonly matrix: Float64Array;
-  readonly right: Float64Array;
-  readonly articulated: Float64Array;
-  readonly acceleration: Float64Array;
-}
-
-/** The only place that allocates. One work space per caller. */
-export function createStarWork(model: StarModel): StarWork {
-  const n = model.gimbals;
-  const work: StarWork = {
-    place: createBasePlace(model),
-    base: new Float64Array(28),
-    wrench: new Float64Array(6),
-    drive: new Float64Array(6),
-    spin: new Float64Array(3 * n),
-    hingeForce: new Float64Array(6 * n),
-    hingeRest: new Float64Array(n),
-    momentumRate: new Float64Array(n),
-    matrix: new Float64Array(36),
-    right: new Float64Array(6),
-    articulated: new Float64Array(36),
-    acceleration: new Float64Array(model.accelerationSize),
-  };
-  setBase(model, work, model.base);
-  return work;
-}
-
-function setBase(model: StarModel, work: StarWork, about: ArrayLike<number>): void {
-  const added = model.footing.floats?.addedInertia ?? 0;
-  const a = model.footing.axis;
-  for (let k = 0; k < 10; k++) work.base[k] = about[k]!;
-  work.base[4] = work.base[4]! + added * a[0]! * a[0]!;
-  work.base[5] = work.base[5]! + added * a[1]! * a[1]!;
-  work.base[6] = work.base[6]! + added * a[2]! * a[2]!;
-  work.base[7] = work.base[7]! + added * a[0]! * a[1]!;
-  work.base[8] = work.base[8]! + added * a[0]! * a[2]!;
-  work.base[9] = work.base[9]! + added * a[1]! * a[2]!;
-}
-
-/**
- * Sets the base's mass properties where legs move by prescription.
- *
- * @param moving  28, see StarWork.base: about O, body components, SI. Mass must be constant.
- */
-export function setMovingBase(model: StarModel, work: StarWork, moving: ArrayLike<number>): void {
-  setBase(model, work, moving);
-  for (let k = 10; k < 28; k++) work.base[k] = moving[k]!;
-}
-
-/**
- * Sets where the planted point is in the body frame, how fast it moves and how that changes: 9 numbers. The
- * motion of a body over planted feet enters here, the line of an edge footing moves with it.
- */
-export function setPlanted(work: StarWork, planted: ArrayLike<number>): void {
-  for (let k = 0; k < 9; k++) work.place.planted[k] = planted[k]!;
-}
-
-/** Solves the symmetric positive definite system of order n in place by Cholesky; `x` holds right side, then result. */
-function solveInPlace(A: Float64Array, x: Float64Array, n: number): void {
-  for (let j = 0; j < n; j++) {
-    let d = A[n * j + j]!;
-    for (let k = 0; k < j; k++) d -= A[n * j + k]! * A[n * j + k]!;
-    d = Math.sqrt(d);
-    A[n * j + j] = d;
-    for (let i = j + 1; i < n; i++) {
-      let s = A[n * i + j]!;
-      for (let k = 0; k < j; k++) s -= A[n * i + k]! * A[n * j + k]!;
-      A[n * i + j] = s / d;
-    }
-    let y = x[j]!;
-    for (let k = 0; k < j; k++) y -= A[n * j + k]! * x[k]!;
-    x[j] = y / d;
-  }
-  for (let i = n - 1; i >= 0; i--) {
-    let s = x[i]!;
-    for (let k = i + 1; k < n; k++) s -= A[n * k + i]! * x[k]!;
-    x[i] = s / A[n * i + i]!;
-  }
-}
+import type { StarWork } from './starWork';
 
 /**
  * Accelerations of the star.
@@ -292,8 +186,11 @@ export function starAcceleration(
     const k3 = 3 * i;
     let hDot = 0;
     if (!held) {
-      hDot =
-        effort[n + i]! + wheelDragTorque(model.drag[k3]!, model.drag[k3 + 1]!, model.drag[k3 + 2]!, speed);
+      hDot = effort[n + i]!;
+      if (model.hasDrag) {
+        const D = model.drag;
+        hDot += wheelDragTorque(D[k3]!, D[k3 + 1]!, D[k3 + 2]!, speed);
+      }
     }
     hRate[i] = hDot;
     px = m * qx + gy * mz - gz * my;
@@ -481,46 +378,6 @@ export function starAcceleration(
     } else {
       out[nb + n + i] = (Js > 0 ? hRate[i]! / Js : 0) - turning;
     }
-  }
-}
-
-/** Projects the articulated inertia and force on the base's freedoms, solves, and adds the result to the drive. */
-function solveBase(work: StarWork, nb: number, out: Float64Array): void {
-  const S = work.place.subspace;
-  const K = work.articulated;
-  const A = work.matrix;
-  const x = work.right;
-  const drive = work.drive;
-  if (nb === 6) {
-    solveInPlace(K, x, 6);
-    for (let j = 0; j < 6; j++) {
-      out[j] = x[j]!;
-      drive[j] = drive[j]! + x[j]!;
-    }
-    return;
-  }
-  for (let r = 0; r < 6; r++) for (let c = r + 1; c < 6; c++) K[6 * r + c] = K[6 * c + r]!;
-  for (let j = 0; j < nb; j++) {
-    for (let k = 0; k <= j; k++) {
-      let sum = 0;
-      for (let r = 0; r < 6; r++) {
-        let row = 0;
-        for (let c = 0; c < 6; c++) row += K[6 * r + c]! * S[6 * k + c]!;
-        sum += S[6 * j + r]! * row;
-      }
-      A[nb * j + k] = sum;
-    }
-  }
-  for (let j = 0; j < nb; j++) {
-    let sum = 0;
-    for (let r = 0; r < 6; r++) sum += S[6 * j + r]! * x[r]!;
-    out[j] = sum;
-  }
-  for (let j = 0; j < nb; j++) x[j] = out[j]!;
-  solveInPlace(A, x, nb);
-  for (let j = 0; j < nb; j++) {
-    out[j] = x[j]!;
-    for (let r = 0; r < 6; r++) drive[r] = drive[r]! + S[6 * j + r]! * x[j]!;
   }
 }
 

@@ -132,6 +132,7 @@ export interface StarModel {
   readonly hasFriction: boolean;
   /** 3n, in the order of WheelDrag. */
   readonly drag: Float64Array;
+  readonly hasDrag: boolean;
 }
 
 const bodyAboutOrigin = (body: RigidBody): number[] => [
@@ -261,6 +262,7 @@ export function compileStar(description: StarDescription): StarModel {
     base,
     restRig,
     hasFriction: gyros.some((g) => g.friction !== undefined),
+    hasDrag: gyros.some((g) => g.drag !== undefined),
     ...model,
   });
 }

@@ -12,8 +12,9 @@ import {
 import { pairLeak, scissoredMomentum, scissoredTorque } from '../../../src/core/physics/closedForms';
 import { startState } from '../../../src/core/physics/freeMotion';
 import { supportReaction } from '../../../src/core/physics/reactions';
-import { createStarWork, starAcceleration } from '../../../src/core/physics/starDynamics';
+import { starAcceleration } from '../../../src/core/physics/starDynamics';
 import { compileStar, type StarDescription } from '../../../src/core/physics/starModel';
+import { createStarWork } from '../../../src/core/physics/starWork';
 import { expectClose } from '../../support/closeTo';
 import { between, createRandom, randomStar, randomStart } from './randomStar';
 

@@ -15,8 +15,8 @@ import {
 } from '../../../src/core/physics/closedForms';
 import { type EffortLaw, simulateFree } from '../../../src/core/physics/freeMotion';
 import { type Mode, modesOf, starModes } from '../../../src/core/physics/stability';
-import { createStarWork } from '../../../src/core/physics/starDynamics';
 import { compileStar, restState, type StarDescription } from '../../../src/core/physics/starModel';
+import { createStarWork } from '../../../src/core/physics/starWork';
 import { expectClose } from '../../support/closeTo';
 
 const [I1, I2, k1] = [0.8, 0.012, 20];

@@ -15,13 +15,13 @@ import { inverseDynamics } from '../../../src/core/physics/inverseDynamics';
 import { linearise } from '../../../src/core/physics/linearisation';
 import { rotate3, rotationOf } from '../../../src/core/physics/spatial';
 import { liveMatrix, modesOf, starModes } from '../../../src/core/physics/stability';
-import { createStarWork } from '../../../src/core/physics/starDynamics';
 import {
   compileStar,
   restState,
   type StarDescription,
   type StarGyro,
 } from '../../../src/core/physics/starModel';
+import { createStarWork } from '../../../src/core/physics/starWork';
 import { expectClose } from '../../support/closeTo';
 
 const degree = Math.PI / 180;

@@ -9,8 +9,9 @@ import {
   stepEuler,
   stepRk4,
 } from '../../../src/core/physics/integrators';
-import { createStarWork, settleState, starDerivative } from '../../../src/core/physics/starDynamics';
+import { settleState, starDerivative } from '../../../src/core/physics/starDynamics';
 import { compileStar, type StarDescription } from '../../../src/core/physics/starModel';
+import { createStarWork } from '../../../src/core/physics/starWork';
 import { expectClose } from '../../support/closeTo';
 import { createRandom, randomStar, randomStart } from './randomStar';
 

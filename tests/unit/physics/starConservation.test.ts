@@ -3,8 +3,8 @@ import { conservedQuantities } from '../../../src/core/physics/conserved';
 import type { StarFooting } from '../../../src/core/physics/footing';
 import { compileFooting } from '../../../src/core/physics/footing';
 import { simulateExactly } from '../../../src/core/physics/freeMotion';
-import { createStarWork } from '../../../src/core/physics/starDynamics';
 import type { StarDescription } from '../../../src/core/physics/starModel';
+import { createStarWork } from '../../../src/core/physics/starWork';
 import { expectClose } from '../../support/closeTo';
 import { createRandom, randomStar, randomStart } from './randomStar';
 

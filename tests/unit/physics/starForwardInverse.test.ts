@@ -5,14 +5,9 @@ import type { StarFooting } from '../../../src/core/physics/footing';
 import { startState } from '../../../src/core/physics/freeMotion';
 import { inverseDynamics } from '../../../src/core/physics/inverseDynamics';
 import { linearise, massMatrix } from '../../../src/core/physics/linearisation';
-import {
-  createStarWork,
-  setMovingBase,
-  setPlanted,
-  starAcceleration,
-  starDerivative,
-} from '../../../src/core/physics/starDynamics';
+import { starAcceleration, starDerivative } from '../../../src/core/physics/starDynamics';
 import { compileStar, type StarModel } from '../../../src/core/physics/starModel';
+import { createStarWork, setMovingBase, setPlanted } from '../../../src/core/physics/starWork';
 import { expectClose } from '../../support/closeTo';
 import { between, createRandom, type Random, randomStar, randomStart } from './randomStar';
 

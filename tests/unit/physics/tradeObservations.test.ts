@@ -2,13 +2,13 @@
 import { describe, expect, it } from 'vitest';
 import { type EffortLaw, simulateFree } from '../../../src/core/physics/freeMotion';
 import { fallFacts, starModes } from '../../../src/core/physics/stability';
-import { createStarWork } from '../../../src/core/physics/starDynamics';
 import {
   compileStar,
   restState,
   type StarDescription,
   type StarGyro,
 } from '../../../src/core/physics/starModel';
+import { createStarWork } from '../../../src/core/physics/starWork';
 import { expectClose } from '../../support/closeTo';
 
 /** A body of 3 kg on an edge along x, its centre 0.2 m up, one upright wheel in a gimbal across. */
