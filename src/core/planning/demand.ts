@@ -11,14 +11,7 @@ import type { Rig } from '../rig';
 import type { DisturbanceCourse } from './disturbances';
 import type { GaitCourse } from './gait';
 import type { LegMassCourse } from './legMass';
-import {
-  extentOf,
-  type GroundAxis,
-  type Polygon,
-  pressureInterval,
-  supportPolygon,
-  turningArm,
-} from './supportPolygon';
+import { type Polygon, pressureStretch, type Stretch, supportPolygon, turningArm } from './supportPolygon';
 
 /** What moves with the hips without turning: torso, payloads, wheels and gimbals. */
 export interface Trunk {
@@ -224,10 +217,10 @@ function boundPressure(k: number, course: GaitCourse, ground: Ground, out: Deman
   if (!course.isFootDownThroughout.subarray(k * course.legs, (k + 1) * course.legs).includes(1))
     out.isPinched[k] = 1;
   const across = [k, next].map((node, i) =>
-    allowedAt(ends[i] as Polygon, 1, out.bareAlong[node], ground.margin),
+    pressureStretch(ends[i] as Polygon, 1, out.bareAlong[node], ground.margin),
   );
   const along = [k, next].map((node, i) =>
-    allowedAt(ends[i] as Polygon, 0, out.bareAcross[node], ground.margin),
+    pressureStretch(ends[i] as Polygon, 0, out.bareAcross[node], ground.margin),
   );
   write(k, across, out.acrossMin, out.acrossMax, out.isPinched);
   write(k, along, out.alongMin, out.alongMax, out.isPinched);
@@ -242,8 +235,6 @@ function isSameFeet(course: GaitCourse, node: number, interval: number): boolean
   return true;
 }
 
-type Stretch = readonly [number, number];
-
 function write(
   k: number,
   ends: readonly Stretch[],
@@ -256,24 +247,6 @@ function write(
   if (most - least < 1e-9) isPinched[k] = 1;
   min[k] = most >= least ? least : (least + most) / 2;
   max[k] = most >= least ? most : min[k];
-}
-
-/**
- * Stretch of the line at `at` that keeps the margin. A line that misses the outline is moved to its nearest part,
- * and one on which the margin leaves nothing gives the middle of what there is.
- */
-function allowedAt(polygon: Polygon, axis: GroundAxis, at: number, margin: number): Stretch {
-  const other = extentOf(polygon, axis === 1 ? 0 : 1);
-  const own = extentOf(polygon, axis);
-  if (other === undefined || own === undefined) return [0, 0];
-  const low = other[0] + margin;
-  const high = other[1] - margin;
-  const line = low <= high ? Math.min(high, Math.max(low, at)) : (other[0] + other[1]) / 2;
-  const kept = pressureInterval(polygon, axis, line, margin);
-  if (kept !== undefined) return kept;
-  const bare = pressureInterval(polygon, axis, line, 0) ?? own;
-  const middle = (bare[0] + bare[1]) / 2;
-  return [middle, middle];
 }
 
 /** Mean moment over the cycle or run, N*m: what the centre of pressure must carry on the mean, the array being unable to. */

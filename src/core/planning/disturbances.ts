@@ -1,6 +1,8 @@
 /** A run of disturbances over the instants of a plan: moments, forces, gravity's direction, added mass and sudden jumps of momentum. */
 import { STANDARD_GRAVITY } from '../physics';
 import type { Disturbance, InlineBody } from '../rig';
+import { spanOf } from './disturbanceBlocks';
+import { hatShare, sampleSeries } from './loadSampling';
 import { createWaveTrain, sampleWaveMoment, type WaveBody } from './waveLoad';
 
 /** What the moments are taken about, and what a disturbance must know of the rig. */
@@ -47,89 +49,11 @@ export interface DisturbanceCourse {
   readonly jumps: readonly Jump[];
 }
 
-/** A block along the ribbon: one disturbance. */
-export interface EventBlock {
-  readonly kind: 'event';
-  readonly label: string;
-  readonly from: number;
-  readonly to: number;
-  readonly row: number;
-  readonly index: number;
-}
-
 /** Twice the mass at the tread: the two road wheels of an in-line body as thin rings. */
 export const roadWheelsOf = (body: InlineBody): NonNullable<DisturbanceSetting['road']> => ({
   spinInertia: 2 * body.tyre.mass * body.tyre.radius ** 2,
   radius: body.tyre.radius,
 });
-
-/** When a disturbance begins and ends, s. */
-export function spanOf(d: Disturbance): readonly [number, number] {
-  switch (d.kind) {
-    case 'shove':
-      return [d.time, d.time];
-    case 'shake':
-      return [d.time, d.time + (d.acceleration.length - 1) * d.interval];
-    case 'recorded':
-      return [d.time, d.time + (d.moment.length - 1) * d.interval];
-    default:
-      return [d.time, d.time + d.duration];
-  }
-}
-
-const NAMES: Readonly<Record<Disturbance['kind'], string>> = {
-  shove: 'Shove',
-  sideLoad: 'Side load',
-  payload: 'Payload',
-  slope: 'Slope',
-  turn: 'Turn',
-  shake: 'Floor shake',
-  waves: 'Waves',
-  sea: 'Sea',
-  recorded: 'Recorded moment',
-};
-
-export const labelOf = (d: Disturbance): string =>
-  d.kind === 'payload' ? (d.mass < 0 ? 'Payload put down' : 'Payload picked up') : NAMES[d.kind];
-
-/** Blocks of a sequence for the ribbon, in its row. */
-export const eventBlocks = (sequence: readonly Disturbance[], row: number): readonly EventBlock[] =>
-  sequence.map((d, index) => {
-    const [from, to] = spanOf(d);
-    return { kind: 'event', label: labelOf(d), from, to, row, index };
-  });
-
-/**
- * Share of a load that is on from `from` to `to` which falls to an instant, when values between instants run
- * straight: the mean of the load under a hat that reaches to the neighbouring instants. The area under the
- * straight run is then the load's own.
- *
- * @param isEnd  -1 at the first instant, 1 at the last, 0 between
- */
-export function hatShare(from: number, to: number, instant: number, step: number, isEnd: -1 | 0 | 1): number {
-  // Integral of the rising half of the hat up to u = (time - instant) / step in [-1, 0]: (1 + u)^2 / 2.
-  const upTo = (time: number): number => {
-    const u = Math.min(1, Math.max(-1, (time - instant) / step));
-    const v = isEnd === -1 ? Math.max(0, u) : isEnd === 1 ? Math.min(0, u) : u;
-    return v <= 0 ? (1 + v) ** 2 / 2 : 1 - (1 - v) ** 2 / 2;
-  };
-  const whole = isEnd === 0 ? 1 : 0.5;
-  return (upTo(to) - upTo(from)) / whole;
-}
-
-/** Value of evenly spaced samples at an instant, joined by straight lines; zero outside. */
-export function sampleSeries(
-  values: ArrayLike<number>,
-  start: number,
-  interval: number,
-  time: number,
-): number {
-  const place = (time - start) / interval;
-  const last = values.length - 1;
-  if (!(place >= 0 && place <= last)) return 0;
-  const i = Math.min(last - 1, Math.floor(place));
-  return (values[i] as number) + (place - i) * ((values[i + 1] as number) - (values[i] as number));
-}
 
 const emptyCourse = (time: Float64Array): DisturbanceCourse & { jumps: Jump[] } => {
   const nodes = time.length;

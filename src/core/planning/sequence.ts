@@ -1,7 +1,7 @@
 /** The run of disturbances as a document: what fits a rig, and the edits that a ribbon makes to it. */
 import type { Disturbance, Jobs, Refusal, Rig } from '../rig';
 import { formatQuantity } from '../units';
-import { spanOf } from './disturbances';
+import { spanOf } from './disturbanceBlocks';
 
 export type DisturbanceKind = Disturbance['kind'];
 

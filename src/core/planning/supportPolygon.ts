@@ -127,6 +127,27 @@ export function pressureInterval(
   return least <= greatest ? [least, greatest] : undefined;
 }
 
+/** Least and greatest coordinate, m. */
+export type Stretch = readonly [number, number];
+
+/**
+ * Stretch of the line at `at` that keeps the margin. A line that misses the outline is moved to its nearest part,
+ * and one on which the margin leaves nothing gives the middle of what there is.
+ */
+export function pressureStretch(polygon: Polygon, axis: GroundAxis, at: number, margin: number): Stretch {
+  const other = extentOf(polygon, axis === 1 ? 0 : 1);
+  const own = extentOf(polygon, axis);
+  if (other === undefined || own === undefined) return [0, 0];
+  const low = other[0] + margin;
+  const high = other[1] - margin;
+  const line = low <= high ? Math.min(high, Math.max(low, at)) : (other[0] + other[1]) / 2;
+  const kept = pressureInterval(polygon, axis, line, margin);
+  if (kept !== undefined) return kept;
+  const bare = pressureInterval(polygon, axis, line, 0) ?? own;
+  const middle = (bare[0] + bare[1]) / 2;
+  return [middle, middle];
+}
+
 /** Integral of the distance from the origin over the rectangle from the origin to (x, y); odd in both. */
 function distanceIntegral(x: number, y: number): number {
   if (x === 0 || y === 0) return 0;

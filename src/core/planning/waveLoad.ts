@@ -145,8 +145,38 @@ export function waveMomentAt(train: WaveTrain, body: WaveBody, time: number): nu
 /** Samples after which the turning of phasors starts again from sine and cosine, so that rounding does not grow. */
 const FRESH_START = 256;
 
+/** Adds size cos(w t - phase) and its companion in sine at evenly spaced instants, by turning a phasor. */
+function addPhasor(
+  train: WaveTrain,
+  i: number,
+  start: number,
+  step: number,
+  cosineSize: number,
+  cosines: Float64Array | undefined,
+  sineSize: number,
+  sines: Float64Array,
+): void {
+  const w = train.encounter[i];
+  const turnCos = Math.cos(w * step);
+  const turnSin = Math.sin(w * step);
+  let c = 0;
+  let s = 0;
+  for (let j = 0; j < sines.length; j++) {
+    if (j % FRESH_START === 0) {
+      const angle = w * (start + j * step) - train.phase[i];
+      c = Math.cos(angle);
+      s = Math.sin(angle);
+    }
+    if (cosines !== undefined) cosines[j] += cosineSize * c;
+    sines[j] += sineSize * s;
+    const next = c * turnCos - s * turnSin;
+    s = s * turnCos + c * turnSin;
+    c = next;
+  }
+}
+
 /**
- * Roll moment of the waves at evenly spaced instants, N*m: `waveMomentAt` many times over, by turning phasors.
+ * Roll moment of the waves at evenly spaced instants, N*m: `waveMomentAt` many times over.
  *
  * @param start  s into the train of the first instant
  * @param step   s
@@ -166,21 +196,33 @@ export function sampleWaveMoment(
   for (let i = 0; i < train.components; i++) {
     const k = train.wavenumber[i];
     const size = across * effectiveSlopeShare(body, k, train.heading) * k * train.amplitude[i];
-    const w = train.encounter[i];
-    const turnCos = Math.cos(w * step);
-    const turnSin = Math.sin(w * step);
-    let c = 0;
-    let s = 0;
-    for (let j = 0; j < out.length; j++) {
-      if (j % FRESH_START === 0) {
-        const angle = w * (start + j * step) - train.phase[i];
-        c = Math.cos(angle);
-        s = Math.sin(angle);
-      }
-      out[j] += size * s;
-      const next = c * turnCos - s * turnSin;
-      s = s * turnCos + c * turnSin;
-      c = next;
-    }
+    addPhasor(train, i, start, step, 0, undefined, size, out);
+  }
+}
+
+/**
+ * Height (m) and slope across (rad) of the water at evenly spaced instants: `waveElevationAt` and `waveSlopeAt`
+ * many times over.
+ *
+ * @param start  s into the train of the first instant
+ * @param step   s
+ * @param level  filled
+ * @param slope  filled; as long as `level`
+ *
+ * O(samples x components) of a few products each.
+ */
+export function sampleWater(
+  train: WaveTrain,
+  start: number,
+  step: number,
+  level: Float64Array,
+  slope: Float64Array,
+): void {
+  level.fill(0);
+  slope.fill(0);
+  const across = Math.sin(train.heading);
+  for (let i = 0; i < train.components; i++) {
+    const a = train.amplitude[i];
+    addPhasor(train, i, start, step, a, level, across * train.wavenumber[i] * a, slope);
   }
 }

@@ -2,17 +2,16 @@ import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { STANDARD_GRAVITY } from '../../../src/core/physics';
 import { computeDemand, groundOf, trunkOf } from '../../../src/core/planning/demand';
+import { eventBlocks } from '../../../src/core/planning/disturbanceBlocks';
 import {
   type DisturbanceSetting,
-  eventBlocks,
-  hatShare,
   roadWheelsOf,
   sampleDisturbances,
-  sampleSeries,
   spreadJumps,
 } from '../../../src/core/planning/disturbances';
 import { compileGait, runTimes, sampleGait } from '../../../src/core/planning/gait';
 import { legMassCourse, legModelOf } from '../../../src/core/planning/legMass';
+import { hatShare, sampleSeries } from '../../../src/core/planning/loadSampling';
 import { type Disturbance, type LeggedBody, type Rig, STRIDER } from '../../../src/core/rig';
 import { expectClose } from '../../support/closeTo';
 

@@ -13,6 +13,7 @@ import {
 import {
   createWaveTrain,
   effectiveSlopeShare,
+  sampleWater,
   sampleWaveMoment,
   type WaveBody,
   type Waves,
@@ -124,6 +125,20 @@ describe('waves as a hull meets them', () => {
     sampleWaveMoment(train, HULL, -4, 0.05, many);
     const single = many.map((_, j) => waveMomentAt(train, HULL, -4 + 0.05 * j));
     const largest = Math.max(...single.map(Math.abs));
+    const level = new Float64Array(3000).fill(Number.NaN);
+    const slope = new Float64Array(3000).fill(Number.NaN);
+    sampleWater(train, -4, 0.05, level, slope);
+    const instants = level.map((_, j) => -4 + 0.05 * j);
+    expectClose(
+      level,
+      instants.map((s) => waveElevationAt(train, s)),
+      { abs: 1e-12 },
+    ); // measured 3e-14
+    expectClose(
+      slope,
+      instants.map((s) => waveSlopeAt(train, s)),
+      { abs: 1e-12 },
+    ); // measured 9e-14
     expectClose(many, single, { abs: 1e-12 * largest }); // measured 4e-11
   });
 
