@@ -105,7 +105,7 @@ function RigActions() {
       </button>
       <button type="button" className="rig-name" onClick={() => setOpened('files')}>
         <b>{name}</b>
-        <small>{isReadOnly ? 'read only' : isDirty ? 'not saved' : 'saved'}</small>
+        <small>{isReadOnly ? 'read only' : isDirty ? 'not saved' : 'no changes'}</small>
         <span className="unseen">: save and open rigs</span>
       </button>
       {offer && (

@@ -2,15 +2,13 @@ import { type KeyboardEvent, type PointerEvent, useId, useRef, useState } from '
 import { describeRange, type QuantityInfo } from '../../core/rig';
 import { formatQuantity, fromSI, parseQuantity, toSI, unitFor } from '../../core/units';
 import { useSession } from '../state/session';
-import { showNumber, stepFrom, stepsFor, tidy } from './stepSize';
+import { showNumber, stepFrom, stepsFor, tidy, unitThatFits } from './stepSize';
 
 export interface NumberFieldProps {
   readonly info: QuantityInfo;
   /** SI. */
   readonly value: number;
   readonly label?: string | undefined;
-  /** A word after the label, such as how many parts follow the change. */
-  readonly note?: string | undefined;
   readonly isReadOnly?: boolean | undefined;
   readonly onChange: (si: number) => void;
   /** A drag begins and ends: everything between is one step to undo. */
@@ -22,12 +20,15 @@ export interface NumberFieldProps {
 const PIXELS_PER_DRAG_STEP = 4;
 const PIXELS_BEFORE_DRAG = 5;
 const LARGE_STEP = 10;
+/** Letters; a longer unit stands under the label. */
+const LONGEST_UNIT_IN_BOX = 6;
 
 interface Drag {
   readonly pointer: number;
   readonly x: number;
   readonly shown: number;
   readonly step: number;
+  readonly symbol: string;
   hasMoved: boolean;
 }
 
@@ -54,12 +55,14 @@ function readTyped(text: string, info: QuantityInfo, symbol: string, label: stri
 export function NumberField(props: NumberFieldProps) {
   const { info, value, isReadOnly = false } = props;
   const id = useId();
-  const symbol = useSession((session) => session.units[info.dimension]);
+  const chosen = useSession((session) => session.units[info.dimension]);
   const input = useRef<HTMLInputElement>(null);
   const drag = useRef<Drag>(undefined);
   const [typed, setTyped] = useState<string>();
   const [fault, setFault] = useState<string>();
 
+  // While it is dragged the tape keeps its unit, whatever size the number comes to.
+  const symbol = drag.current?.symbol ?? unitThatFits(info.dimension, value, chosen).symbol;
   const unit = unitFor(info.dimension, symbol);
   const shown = tidy(fromSI(value, info.dimension, symbol));
   const steps = stepsFor(info, shown, symbol);
@@ -98,7 +101,14 @@ export function NumberField(props: NumberFieldProps) {
 
   const onPointerDown = (event: PointerEvent): void => {
     if (isReadOnly || event.button !== 0 || document.activeElement === input.current) return;
-    drag.current = { pointer: event.pointerId, x: event.clientX, shown, step: steps.drag, hasMoved: false };
+    drag.current = {
+      pointer: event.pointerId,
+      x: event.clientX,
+      shown,
+      step: steps.drag,
+      symbol,
+      hasMoved: false,
+    };
     // Focus would open the keyboard of a tablet: it comes at the end of a tap, not at the start of a drag.
     event.preventDefault();
     event.currentTarget.setPointerCapture(event.pointerId);
@@ -130,12 +140,13 @@ export function NumberField(props: NumberFieldProps) {
     drag.current = undefined;
   };
 
+  const hasLongUnit = unit.symbol.length > LONGEST_UNIT_IN_BOX;
   const travel = (shown / steps.drag) * PIXELS_PER_DRAG_STEP;
   return (
     <div className="number" data-fault={fault !== undefined || undefined}>
       <label className="number-label" htmlFor={id}>
         {label}
-        {props.note && <small> {props.note}</small>}
+        {hasLongUnit && <small> {unit.symbol}</small>}
       </label>
       <button
         type="button"
@@ -174,7 +185,7 @@ export function NumberField(props: NumberFieldProps) {
           onBlur={takeTyped}
           onKeyDown={onKeyDown}
         />
-        {unit.symbol !== '' && <span className="number-unit">{unit.symbol}</span>}
+        {unit.symbol !== '' && !hasLongUnit && <span className="number-unit">{unit.symbol}</span>}
         <span
           className="number-rule"
           style={{ backgroundPositionX: `calc(50% - ${(travel % 2000).toFixed(1)}px)` }}

@@ -1,6 +1,6 @@
 /** The steps of a number field: round in the unit shown, a few per cent of the value. */
 import type { QuantityInfo } from '../../core/rig';
-import { formatNumber, fromSI } from '../../core/units';
+import { type Dimension, formatNumber, fromSI, type Unit, unitFor, unitsOf } from '../../core/units';
 
 /** The nearest of 1, 2, 5 times a power of ten at or below a size. */
 export function roundDown125(size: number): number {
@@ -46,4 +46,17 @@ export const tidy = (value: number): number => Number(value.toPrecision(12));
 export function showNumber(value: number): string {
   const text = formatNumber(value, 4);
   return text.includes('.') && !text.includes('·') ? text.replace(/\.?0+$/, '') : text;
+}
+
+const MOST_LETTERS = 6;
+
+/**
+ * The unit a field shows a value in: the one the user chose for the dimension, else the usual one unless its
+ * number would not fit the box and another unit's would.
+ */
+export function unitThatFits(dimension: Dimension, si: number, chosen: string | undefined): Unit {
+  const usual = unitFor(dimension, chosen);
+  const fits = (unit: Unit): boolean => showNumber(si / unit.toSI).length <= MOST_LETTERS;
+  if (chosen !== undefined || si === 0 || fits(usual)) return usual;
+  return unitsOf(dimension).find((unit) => fits(unit) && Math.abs(si) >= 0.1 * unit.toSI) ?? usual;
 }

@@ -1,6 +1,7 @@
 import { useEffect, useId, useRef } from 'react';
 import { type LedgerLine, tightest } from '../../core/planning';
 import type { PlanView } from '../../core/trial';
+import { formatNumber, fromSI } from '../../core/units';
 import { showQuantity } from '../sheet/showFigure';
 import { useShown } from '../state/reading';
 import { useSession } from '../state/session';
@@ -33,7 +34,8 @@ function Rung({ line }: { readonly line: LedgerLine }) {
   const place = useRef<HTMLLIElement>(null);
   const isOpen = useSession((session) => session.openedLine === line.name);
   const symbol = useSession((session) => session.units[line.ask.dimension]);
-  const show = (value: number): string => showQuantity(value, line.ask.dimension, symbol);
+  const { dimension } = line.ask;
+  const asked = formatNumber(fromSI(line.ask.value, dimension, symbol));
 
   useEffect(() => {
     if (isOpen) place.current?.scrollIntoView({ block: 'nearest' });
@@ -58,7 +60,7 @@ function Rung({ line }: { readonly line: LedgerLine }) {
         <span className="rung-figures">
           {fails(line) && <b className="word-fails">Fails, {spareWords(line.spare)}. </b>}
           {!fails(line) && <span className="unseen">{spareWords(line.spare)}. </span>}
-          asks {show(line.ask.value)} of {show(line.have.value)}
+          asks {asked} of {showQuantity(line.have.value, dimension, symbol)}
         </span>
       </button>
       <div id={id} hidden={!isOpen}>
