@@ -20,6 +20,7 @@ export * from './hullSection';
 export * from './hydrostatics';
 export * from './integrators';
 export * from './inverseDynamics';
+export * from './layoutReport';
 export * from './legGeometry';
 export * from './linearisation';
 export * from './losses';

@@ -222,4 +222,32 @@ describe('support', () => {
     const speed = [0, 1, 2].map((j) => (centre(2)[j]! - centre(0)[j]!) / 2e-3);
     expectClose(middle.velocity, speed, { abs: 1e-5 }); // measured 1.4e-6, of the differences over 2 ms
   });
+
+  it('a reaction wheel: gimbal locked, the motor turns the body the other way', () => {
+    const Js = 2e-3;
+    const description: StarDescription = {
+      base: { mass: 5, com: [0, 0, 0], inertia: [0.2, 1, 1, 0, 0, 0] },
+      gyros: [
+        {
+          position: [0, 0, 0],
+          gimbalAxis: [0, 1, 0],
+          spinAxis: [1, 0, 0],
+          frame: { mass: 0.1, com: [0, 0, 0], inertia: [1e-3, 1e-3, 1e-3, 0, 0, 0] },
+          wheel: { mass: 0.5, axialInertia: Js, transverseInertia: 1.1e-3, centre: [0, 0, 0] },
+          drive: { kind: 'locked' },
+          spin: 'driven',
+        },
+      ],
+      footing: { kind: 'edge', point: [0, 0, 0], axis: [1, 0, 0] },
+      gravity: [0, 0, 0],
+    };
+    const model = compileStar(description);
+    const effort = new Float64Array(model.effortSize);
+    effort[1] = 0.3;
+    const out = new Float64Array(model.accelerationSize);
+    starAcceleration(model, createStarWork(model), startState(model, { wheelSpeed: [100] }), effort, out);
+    // The wheel turns freely about roll, so it is no load there; it gains what the body loses.
+    expectClose(out[0]!, -0.3 / 0.201, { rel: 1e-14 });
+    expectClose(out[2]!, 0.3 / Js + 0.3 / 0.201, { rel: 1e-14 });
+  });
 });
