@@ -93,6 +93,9 @@ export function gimbalRateOf(rig: Rig, gyro: Gyro): number {
   }
 }
 
+/** Slower than a turn a minute, a wheel counts as at rest: a balance grade would allow it any unbalance. */
+const SLOWEST_SPEED = 0.1;
+
 /**
  * Everything the Spin up station says of one gyro at its running speed.
  *
@@ -113,7 +116,8 @@ export function spinGyro(
   const weighed = wheelProperties(gyro.wheel.parts);
   if (weighed.kind === 'refused') return weighed;
   const { wheel } = weighed;
-  const { speed, bearing: part } = gyro;
+  const { bearing: part } = gyro;
+  const speed = gyro.speed < SLOWEST_SPEED ? 0 : gyro.speed;
   const stressed = wheelStress(gyro.wheel.parts, speed, choices.factor);
   if (stressed.kind === 'refused') return stressed;
   const momentum = wheel.spinInertia * speed;

@@ -1,5 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
+import { hullFigures, usualHullRollStart } from '../../../src/core/physics/hullFigures';
 import { hullSection } from '../../../src/core/physics/hullSection';
 import {
   flotation,
@@ -212,5 +213,38 @@ describe('flotation', () => {
       kind: 'refused',
       faults: [{ field: 'section.bilgeRadius' }],
     });
+  });
+});
+
+describe('hull figures', () => {
+  it('open into the numbers they were made of, and are none for a hull that sinks', () => {
+    const hull = hullOf({ kind: 'deadrise', beam: 1.5, depth: 0.6, deadrise: 12 * DEGREE }, 4.2);
+    const section = sectionOf(hull);
+    const loading = load({ mass: 480, centreHeight: 0.35 });
+    const figures = new Map(hullFigures(section, loading, 90).map((f) => [f.id, f]));
+    const of = (id: string, label: string): number =>
+      figures.get(id)!.inputs.find((i) => i.label === label)!.value;
+    const GM = figures.get('GM')!.value;
+    expectClose(GM, of('GM', 'KB') + of('GM', 'BM') - 0.35, { rel: 1e-14 }); // measured 0
+    const BM = of('BM', 'Breadth at the waterline') ** 3 / (12 * of('BM', 'Displaced section'));
+    expectClose(figures.get('BM')!.value, BM, { rel: 1e-13 }); // measured 2e-16
+    const period = 2 * Math.PI * Math.sqrt(90 / (480 * 9.80665 * GM));
+    expectClose(figures.get('rollPeriod')!.value, period, { rel: 1e-14 }); // measured 0
+    for (const f of figures.values()) {
+      expect(Number.isFinite(f.value), f.id).toBe(true);
+      expect(f.inputs.length * f.source.length * f.formula.length, f.id).toBeGreaterThan(0);
+    }
+    expect(hullFigures(section, load({ mass: 1e5 }), 90)).toEqual([]);
+  });
+
+  it('start the roll of a fin keel with its drag about the centre of mass', () => {
+    const fin: Keel = { kind: 'fin', depth: 0.5, length: 1.2, thickness: 0.06, mass: 60 };
+    const shape: Section = { kind: 'bilge', beam: 1.5, depth: 0.6, bilgeRadius: 0.1 };
+    const loading = load({ mass: 480, centreHeight: 0.2 });
+    const bare = usualHullRollStart(hullOf(shape, 4), loading, 90, 0.4);
+    const finned = usualHullRollStart(hullOf(shape, 4, fin), loading, 90, 0.4);
+    const plate = (0.5 * 1025 * 1.2 * 1.2 * (0.7 ** 4 - 0.2 ** 4)) / 4;
+    expectClose(finned.quadraticDamping - bare.quadraticDamping, plate, { rel: 1e-12 }); // measured 0
+    expectClose(finned.addedInertia, bare.addedInertia, { rel: 1e-15 }); // measured 0
   });
 });

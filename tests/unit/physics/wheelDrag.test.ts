@@ -20,7 +20,7 @@ function heavyPower(housing: Housing): number {
   const outcome = wheelProperties(HEAVY);
   if (outcome.kind !== 'wheel') throw new Error('refused');
   const { mass, spinInertia } = outcome.wheel;
-  expectClose(mass, 100, { rel: 0.02 });
+  expectClose(mass, 100, { rel: 0.02 }); // measured 1.6e-2
   const [load] = bearingLoads({
     mass,
     momentum: spinInertia * speed,
@@ -68,11 +68,11 @@ describe('drag of a wheel', () => {
       const speed = rpm * RPM;
       const fit = fitWheelDrag(parts, speed);
       const at = (w: number) => fit.constant + fit.viscous * w + fit.quadratic * w * w;
-      expectClose(at(speed), parts.total(speed), { rel: 1e-12 });
+      expectClose(at(speed), parts.total(speed), { rel: 1e-12 }); // measured 1.9e-16
       const slope = (parts.total(speed * 1.001) - parts.total(speed * 0.999)) / (0.002 * speed);
-      expectClose(fit.viscous + 2 * fit.quadratic * speed, slope, { rel: 1e-6 });
+      expectClose(fit.viscous + 2 * fit.quadratic * speed, slope, { rel: 1e-6 }); // measured 1.8e-13
       expect(Math.min(fit.constant, fit.viscous, fit.quadratic)).toBeGreaterThanOrEqual(0);
-      expectClose(at(speed * 0.8), parts.total(speed * 0.8), { rel: 0.03 });
+      expectClose(at(speed * 0.8), parts.total(speed * 0.8), { rel: 0.03 }); // measured 1.2e-2
     }
   });
 });
