@@ -10,7 +10,7 @@ import {
   type Sprite,
 } from 'three';
 import { convexHull } from '../../core/planning';
-import { useTexture } from './Ground';
+import { usePixelHeight, useTexture } from './Ground';
 import { useGeometry } from './Inked';
 import { rotateInto } from './legPose';
 import { segmentsGeometry } from './shapes';
@@ -29,9 +29,13 @@ export function BalanceMarks() {
 
 const DASHES = 24;
 
+/** CSS pixels across. */
+const COM_SIZE = 23;
+
 /** The quartered disc of drawings, always in sight, and a plumb line to the ground. */
 function CentreOfMass() {
   const { frame, palette, size } = useStage();
+  const pixel = usePixelHeight();
   const sprite = useRef<Sprite>(null);
   const plumb = useRef<Group>(null);
   const foot = useRef<Group>(null);
@@ -84,7 +88,7 @@ function CentreOfMass() {
   });
   return (
     <>
-      <sprite ref={sprite} scale={0.026} renderOrder={20}>
+      <sprite ref={sprite} scale={COM_SIZE * pixel} renderOrder={20}>
         <spriteMaterial
           map={texture}
           sizeAttenuation={false}

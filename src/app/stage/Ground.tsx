@@ -1,4 +1,4 @@
-import { useFrame } from '@react-three/fiber';
+import { useFrame, useThree } from '@react-three/fiber';
 import { useEffect, useMemo, useRef } from 'react';
 import {
   CanvasTexture,
@@ -7,20 +7,19 @@ import {
   Float32BufferAttribute,
   type Group,
   PlaneGeometry,
-  type Sprite,
   SRGBColorSpace,
 } from 'three';
 import { formatQuantity } from '../../core/units';
-import { roundUp125 } from './arrowScale';
+import { GRID_LEADS, roundUp } from './arrowScale';
 import { useGeometry } from './Inked';
 import { segmentsGeometry } from './shapes';
-import { useStage } from './stageFrame';
+import { FIELD_OF_VIEW, useStage } from './stageFrame';
 
 /** Cells of the grid to either side of its middle. */
 const CELLS = 12;
 
 /** Side of a cell of the grid, m: a round length of about a sixth of the rig. */
-export const gridStep = (size: number): number => roundUp125(size / 7);
+export const gridStep = (size: number): number => roundUp(size / 7, GRID_LEADS);
 
 /** Lines in x-y about the origin, each cut into cells so that they can fade towards the edge. */
 function gridGeometry(step: number, line: Color, page: Color) {
@@ -105,8 +104,17 @@ export function Ground() {
   );
 }
 
-/** CSS pixels of a label's height, as a share of the height of the picture at the distance of one metre. */
-const LABEL_HEIGHT = 0.03;
+/** CSS pixels. */
+const LABEL_HEIGHT = 19;
+
+/**
+ * Size that makes a sprite of fixed screen size one CSS pixel high. Such a sprite is as large as if it stood one
+ * unit from the eye, where the picture is 2 tan(fov / 2) high.
+ */
+export function usePixelHeight(): number {
+  const height = useThree((state) => state.size.height);
+  return (2 * Math.tan((FIELD_OF_VIEW * Math.PI) / 360)) / Math.max(1, height);
+}
 
 /** A word on the stage that keeps its size on the screen. */
 export function Label({
@@ -117,7 +125,7 @@ export function Label({
   readonly at: readonly [number, number, number];
 }) {
   const { palette } = useStage();
-  const sprite = useRef<Sprite>(null);
+  const pixel = usePixelHeight();
   const width = 24 * text.length + 24;
   const ink = `#${palette.soft.getHexString()}`;
   const texture = useTexture(
@@ -133,10 +141,9 @@ export function Label({
   );
   return (
     <sprite
-      ref={sprite}
       position={[...at]}
       center={ANCHOR}
-      scale={[(LABEL_HEIGHT * width) / 52, LABEL_HEIGHT, 1]}
+      scale={[(pixel * LABEL_HEIGHT * width) / 52, pixel * LABEL_HEIGHT, 1]}
       renderOrder={8}
     >
       <spriteMaterial
@@ -184,8 +191,8 @@ const WATER_LINES = 8;
 export function Water() {
   const { frame, palette, box } = useStage();
   const group = useRef<Group>(null);
-  const length = 1.7 * (box.max[0] - box.min[0]);
-  const width = 2.6 * (box.max[1] - box.min[1]);
+  const length = 1.35 * (box.max[0] - box.min[0]);
+  const width = 2.4 * (box.max[1] - box.min[1]);
   const sheet = useGeometry(() => new PlaneGeometry(length, width), [length, width]);
   const lines = useGeometry(() => {
     const points: number[] = [];
@@ -216,7 +223,7 @@ export function Water() {
         />
       </mesh>
       <lineSegments geometry={lines} renderOrder={1}>
-        <lineBasicMaterial color={palette.water} transparent opacity={0.7} depthWrite={false} />
+        <lineBasicMaterial color={palette.water} transparent opacity={0.5} depthWrite={false} />
       </lineSegments>
     </group>
   );

@@ -16,6 +16,7 @@ import type { Selection } from '../state/session';
 import { stream } from '../state/stream';
 import { wheelExtent } from './bodyPlaces';
 import { Inked, useGeometry } from './Inked';
+import { BEARINGS_STAND } from './Mounts';
 import { Protractor } from './Protractor';
 import { gimbalFrame } from './partEdits';
 import { arcTube, frameGeometry, wheelGeometry } from './shapes';
@@ -104,7 +105,7 @@ function Bearings({ radius, part }: { readonly radius: number; readonly part: Se
   const { palette } = useStage();
   const block = useGeometry(() => new BoxGeometry(0.26 * radius, 0.26 * radius, 0.12 * radius), [radius]);
   return [1, -1].map((side) => (
-    <group key={side} position={[0, 0, side * 1.29 * radius]}>
+    <group key={side} position={[0, 0, side * BEARINGS_STAND * radius]}>
       <Inked geometry={block} colour={palette.soft} part={part} />
     </group>
   ));

@@ -12,7 +12,8 @@ import {
 } from 'three';
 import { useSession } from '../state/session';
 import { beginDrag, type DragEnds } from './dragging';
-import { type Handle, handlesOf, type SlideHandle, type TurnHandle } from './handles';
+import { handlesOf } from './handles';
+import type { Handle, SlideHandle, TurnHandle } from './handleTypes';
 import { noRaycast, useGeometry } from './Inked';
 import { createLegPoses, poseLegs } from './legPose';
 import { arcTube } from './shapes';
@@ -58,16 +59,11 @@ export function Handles() {
 const metresPerPixel = (camera: PerspectiveCamera, at: Vector3, height: number): number =>
   (2 * Math.tan((camera.fov * Math.PI) / 360) * camera.position.distanceTo(at)) / height / camera.zoom;
 
-/** Keeps a group the same size on the screen: inside it one unit is one CSS pixel. */
-function usePixelScale() {
-  const group = useRef<Group>(null);
+/** Metres to a CSS pixel at a group, asked for each frame. */
+function usePixelSize(): (group: Group) => number {
   const camera = useThree((state) => state.camera) as PerspectiveCamera;
   const height = useThree((state) => state.size.height);
-  useFrame(() => {
-    if (!group.current) return;
-    group.current.scale.setScalar(metresPerPixel(camera, group.current.getWorldPosition(place), height));
-  });
-  return group;
+  return (group) => metresPerPixel(camera, group.getWorldPosition(place), height);
 }
 
 /** What a press on a grip needs from the stage: the way from the renderer's axes into the frame of the handle. */
@@ -102,8 +98,18 @@ const HANDLE = { isHandle: true };
 function SlideGrip({ handle }: { readonly handle: SlideHandle }) {
   const { palette } = useStage();
   const frame = useRef<Group>(null);
-  const scaled = usePixelScale();
+  const grip = useRef<Group>(null);
+  const pixelSize = usePixelSize();
   const press = useGrip(handle);
+  const { at, axis, clear, leastPixels } = handle;
+  useFrame(() => {
+    if (!grip.current) return;
+    // Inside the grip one unit is one CSS pixel.
+    const pixel = pixelSize(grip.current);
+    const out = Math.max(clear, leastPixels * pixel);
+    grip.current.scale.setScalar(pixel);
+    grip.current.position.set(at[0] + axis[0] * out, at[1] + axis[1] * out, at[2] + axis[2] * out);
+  });
   const turn = useMemo(
     () => new Quaternion().setFromUnitVectors(ALONG_Y, new Vector3(...handle.axis)),
     [handle.axis],
@@ -114,7 +120,7 @@ function SlideGrip({ handle }: { readonly handle: SlideHandle }) {
   const material = <meshBasicMaterial color={palette.chosen} {...onTop} />;
   return (
     <group ref={frame}>
-      <group ref={scaled} position={[...handle.at]} quaternion={turn}>
+      <group ref={grip} quaternion={turn}>
         <mesh geometry={head} position={[0, GRIP_LENGTH - 7.5, 0]} renderOrder={30} raycast={noRaycast}>
           {material}
         </mesh>
@@ -141,9 +147,18 @@ const ARC_SHOWN = 0.42;
 function TurnGrip({ handle }: { readonly handle: TurnHandle }) {
   const { palette } = useStage();
   const frame = useRef<Group>(null);
-  const scaled = usePixelScale();
+  const ring = useRef<Group>(null);
+  const grip = useRef<Group>(null);
+  const pixelSize = usePixelSize();
   const press = useGrip(handle);
-  const { radius } = handle;
+  const { radius, leastPixels } = handle;
+  useFrame(() => {
+    if (!ring.current || !grip.current) return;
+    const pixel = pixelSize(ring.current);
+    const wide = Math.max(1, (leastPixels * pixel) / radius);
+    ring.current.scale.setScalar(wide);
+    grip.current.scale.setScalar(pixel / wide);
+  });
   const turn = useMemo(() => {
     const x = new Vector3(...handle.zero);
     const z = new Vector3(...handle.normal);
@@ -158,12 +173,12 @@ function TurnGrip({ handle }: { readonly handle: TurnHandle }) {
   const material = <meshBasicMaterial color={palette.chosen} {...onTop} />;
   return (
     <group ref={frame}>
-      <group position={[...handle.centre]} quaternion={turn}>
+      <group ref={ring} position={[...handle.centre]} quaternion={turn}>
         <group rotation={[0, 0, at]}>
           <mesh geometry={arc} rotation={[0, 0, -half]} renderOrder={29} raycast={noRaycast}>
             {material}
           </mesh>
-          <group ref={scaled} position={[radius, 0, 0]}>
+          <group ref={grip} position={[radius, 0, 0]}>
             <mesh geometry={knob} renderOrder={30} raycast={noRaycast}>
               {material}
             </mesh>

@@ -12,12 +12,19 @@ export function Payloads() {
 }
 
 function PayloadBox({ payload, index }: { readonly payload: Payload; readonly index: number }) {
-  const { palette } = useStage();
+  const { palette, rig } = useStage();
+  // What a hull carries would hide its wheels.
+  const isInHull = rig.body.kind === 'hull';
   const [x, y, z] = payload.size;
   const box = useGeometry(() => new BoxGeometry(x, y, z), [x, y, z]);
   return (
     <group position={[...payload.position]}>
-      <Inked geometry={box} colour={palette.cargo} part={{ kind: 'payload', index }} />
+      <Inked
+        geometry={box}
+        colour={palette.cargo}
+        opacity={isInHull ? 0.5 : 1}
+        part={{ kind: 'payload', index }}
+      />
     </group>
   );
 }

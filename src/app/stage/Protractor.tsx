@@ -2,18 +2,18 @@ import { useFrame } from '@react-three/fiber';
 import { useRef } from 'react';
 import { DoubleSide, type Group, Shape, ShapeGeometry } from 'three';
 import type { Gyro } from '../../core/rig';
-import { PROTRACTOR_RADIUS, PROTRACTOR_STANDS } from './handles';
+import { PROTRACTOR_RADIUS, PROTRACTOR_STANDS } from './cargoHandles';
 import { noRaycast, useGeometry } from './Inked';
 import { sectorGeometry, segmentsGeometry } from './shapes';
 import { useStage } from './stageFrame';
 
 const DEGREE = Math.PI / 180;
 
-/** Ticks every five degrees, longer every fifteen, between two angles from the x axis. */
+/** Ticks every fifteen degrees, longer every forty-five, between two angles from the x axis. */
 function ticks(inner: number, outer: number, min: number, max: number): number[] {
   const points: number[] = [];
-  for (let k = Math.ceil(min / (5 * DEGREE) - 1e-6); k * 5 * DEGREE <= max + 1e-9; k++) {
-    const angle = k * 5 * DEGREE;
+  for (let k = Math.ceil(min / (15 * DEGREE) - 1e-6); k * 15 * DEGREE <= max + 1e-9; k++) {
+    const angle = k * 15 * DEGREE;
     const start = outer - (outer - inner) * (k % 3 === 0 ? 0.62 : 0.3);
     points.push(
       start * Math.cos(angle),

@@ -40,15 +40,16 @@ function useArrayPlace(): { middle: Point; reach: number } {
 
 /** Momentum, torque, demand and yaw leak of the array, in the colours and shapes they have everywhere. */
 export function QuantityArrows() {
-  const { rig } = useStage();
+  const { rig, size } = useStage();
   const { middle, reach } = useArrayPlace();
   if (rig.array.gyros.length === 0) return null;
+  const arc = Math.max(1.15 * reach, 0.17 * size);
   return (
     <group position={[...middle]}>
       <MomentumArrow />
-      <TorqueArc radius={1.12 * reach} />
-      <DemandArc radius={1.3 * reach} />
-      <LeakArc radius={1.12 * reach} />
+      <TorqueArc radius={arc} />
+      <DemandArc radius={1.14 * arc} />
+      <LeakArc radius={arc} />
     </group>
   );
 }
@@ -65,8 +66,8 @@ function MomentumArrow() {
   const shaft = useRef<Mesh>(null);
   const heads = useRef<Group>(null);
   const mark = useRef<Group>(null);
-  const thick = 0.0065 * size;
-  const longest = 0.34 * size;
+  const thick = 0.005 * size;
+  const longest = 0.28 * size;
   const bar = useGeometry(
     () => new CylinderGeometry(thick, thick, 1, 10).rotateX(Math.PI / 2).translate(0, 0, 0.5),
     [thick],
@@ -200,7 +201,7 @@ const useArc = (make: () => ArcTube, inputs: readonly unknown[]): ArcTube =>
 /** Roll and pitch torque of the array on the body; what it does about the vertical is drawn as the leak. */
 function TorqueArc({ radius }: { readonly radius: number }) {
   const { frame, palette, size } = useStage();
-  const tube = 0.0075 * size;
+  const tube = 0.006 * size;
   const arc = useArc(() => arcTube(radius, tube, LONGEST_ARC, 96), [radius, tube]);
   const head = useGeometry(
     () => new ConeGeometry(3 * tube, 7 * tube, 14).translate(0, 2.6 * tube, 0),
@@ -215,7 +216,7 @@ function TorqueArc({ radius }: { readonly radius: number }) {
 /** The roll moment asked for: broken, with a head not filled in. */
 function DemandArc({ radius }: { readonly radius: number }) {
   const { frame, palette, size } = useStage();
-  const tube = 0.0042 * size;
+  const tube = 0.0034 * size;
   const arc = useArc(() => arcTube(radius, tube, LONGEST_ARC, 96, [3, 2]), [radius, tube]);
   const head = useGeometry(() => openHeadGeometry(9 * tube, 4.6 * tube, 2 * tube), [tube]);
   const read = (out: Vector3): void => {

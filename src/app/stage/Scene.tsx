@@ -12,6 +12,7 @@ import { Handles } from './Handles';
 import { HullModel } from './HullModel';
 import { InlineModel } from './InlineModel';
 import { LeggedTrunk, Legs } from './LeggedModel';
+import { Mounts } from './Mounts';
 import { Payloads } from './Payloads';
 import type { Palette } from './palette';
 import { selectTapped } from './picking';
@@ -57,12 +58,12 @@ export function Scene({ palette, ask }: SceneProps) {
 
 function Light() {
   const { palette } = useStage();
-  const dim = palette.isDark ? 0.85 : 1;
+  const dim = palette.isDark ? 0.8 : 1;
   return (
     <>
       <color attach="background" args={[palette.page]} />
-      <hemisphereLight args={['#ffffff', palette.isDark ? '#5b6468' : '#c9c2b2', 1.9 * dim]} />
-      <directionalLight position={[3, 6, 2]} intensity={1.5 * dim} />
+      <hemisphereLight args={['#ffffff', palette.isDark ? '#5b6468' : '#d8d3c6', 2.3 * dim]} />
+      <directionalLight position={[3, 6, 2]} intensity={1.25 * dim} />
     </>
   );
 }
@@ -97,6 +98,7 @@ function RigModel() {
         {body.kind === 'hull' && <HullModel body={body} />}
         {body.kind === 'inline' && <InlineModel body={body} />}
         <Payloads />
+        <Mounts />
         <Gyros />
       </group>
       <QuantityArrows />

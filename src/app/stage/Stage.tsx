@@ -6,15 +6,15 @@ import { stream } from '../state/stream';
 import { holdForCapture } from './captureStage';
 import { type DragNote, onDragNote } from './dragging';
 import type { View } from './framing';
-import { partName } from './handles';
 import { type Palette, usePalette } from './palette';
+import { partName } from './parts';
 import { describeInstant } from './poseSummary';
 import { Scene } from './Scene';
 import { canDrawStage, StageBoundary, StageMessage } from './StageBoundary';
 import { StageCaption } from './StageCaption';
-import { createStageFrame } from './stageFrame';
+import { createStageFrame, FIELD_OF_VIEW } from './stageFrame';
 import { onStageKeyDown, onStageKeyUp } from './stageKeys';
-import { FIELD_OF_VIEW, type ViewAsk } from './Viewpoint';
+import type { ViewAsk } from './Viewpoint';
 import './stage.css';
 
 interface Hit {

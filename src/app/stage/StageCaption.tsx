@@ -16,11 +16,11 @@ export function StageCaption() {
   return (
     <p className="stage-caption" style={{ left: left + 12, right: right + 12, bottom: bottom + 8 }}>
       <span>
-        {QUANTITY_MARKS.torque.label}: full arc {formatQuantity(scales.torque.full, 'torque', undefined, 1)}
+        {QUANTITY_MARKS.torque.label}: full arc {formatQuantity(scales.torque.full, 'torque', undefined, 2)}
       </span>
       <span>
         {QUANTITY_MARKS.momentum.label}: full arrow{' '}
-        {formatQuantity(scales.momentum.full, 'angularMomentum', undefined, 1)}
+        {formatQuantity(scales.momentum.full, 'angularMomentum', undefined, 2)}
       </span>
       {isPlaying && <span>Wheels shown {SHOWN_SLOWER} times slower</span>}
     </p>

@@ -5,7 +5,7 @@ import { type PerspectiveCamera, Vector3 } from 'three';
 import { useSession } from '../state/session';
 import { type Box, boxCentre, type Point } from './bodyPlaces';
 import { eyeDirection, frameDistance, freeArea, type View } from './framing';
-import { useStage } from './stageFrame';
+import { FIELD_OF_VIEW, useStage } from './stageFrame';
 
 /** The part of the controls that framing needs; drei's type is of a package of its own. */
 interface Controls {
@@ -18,7 +18,6 @@ interface Controls {
 /** Turns stage axes (z up) into the renderer's (y up), as the adapter group does for all that is drawn. */
 const toRenderer = ([x, y, z]: Point, out: Vector3): Vector3 => out.set(x, z, -y);
 
-export const FIELD_OF_VIEW = 30;
 const DEGREE = Math.PI / 180;
 
 /** A body may go this share of its size from the middle of the picture before the eye goes along. */

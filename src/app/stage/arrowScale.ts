@@ -2,7 +2,7 @@ import type { Motion } from '../../core/trial';
 
 /** How a quantity turns into the length of its arrow. */
 export interface ArrowScale {
-  /** SI value that draws the longest arrow: a round number 1, 2 or 5 times a power of ten. */
+  /** SI value that draws the longest arrow: a round number. */
   readonly full: number;
   /** m, length of the longest arrow. */
   readonly longest: number;
@@ -15,13 +15,17 @@ export interface ArrowLength {
   readonly isClamped: boolean;
 }
 
-/** The next round number at or above a value: 1, 2 or 5 times a power of ten. */
-export function roundUp125(value: number): number {
+/** The leads that lengths of a grid may have, and those of an arrow's full value, which may come closer. */
+export const GRID_LEADS = [1, 2, 5, 10] as const;
+const SCALE_LEADS = [1, 1.5, 2, 3, 4, 5, 6, 8, 10] as const;
+
+/** The next round number at or above a value: one of the leads times a power of ten; 1 for nothing at all. */
+export function roundUp(value: number, leads: readonly number[]): number {
   if (!(value > 0) || !Number.isFinite(value)) return 1;
   const decade = 10 ** Math.floor(Math.log10(value));
   const lead = value / decade;
   // A hair of slack, so that 0.2 / 0.1 does not count as more than 2.
-  const step = [1, 2, 5, 10].find((s) => lead <= s * (1 + 1e-9)) ?? 10;
+  const step = leads.find((s) => lead <= s * (1 + 1e-9)) ?? 10;
   return step * decade;
 }
 
@@ -32,7 +36,7 @@ export function roundUp125(value: number): number {
 export function chooseScale(sizes: readonly number[], longest: number): ArrowScale {
   const sorted = sizes.filter((s) => Number.isFinite(s)).sort((a, b) => a - b);
   const high = sorted[Math.floor(0.98 * (sorted.length - 1))] ?? 0;
-  return { full: roundUp125(high), longest };
+  return { full: roundUp(high, SCALE_LEADS), longest };
 }
 
 /** Length of an arrow for a value; a value that is not a number draws none. */

@@ -67,11 +67,11 @@ export function snap(value: number, step: number): number {
 
 /**
  * The step that lengths snap to in a drag, m: a whole millimetre, half centimetre or the like, about a
- * three-hundredth of the size of the thing.
+ * thousandth of the size of the thing.
  */
 export function lengthStep(size: number): number {
   const steps = [0.0005, 0.001, 0.005, 0.01, 0.05, 0.1];
-  return steps.find((step) => step >= size / 400) ?? 0.1;
+  return steps.find((step) => step >= size / 1000) ?? 0.1;
 }
 
 export const clamp = (value: number, min: number, max: number): number => Math.min(max, Math.max(min, value));

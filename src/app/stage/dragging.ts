@@ -5,7 +5,7 @@ import { useDocument } from '../state/document';
 import { useSession } from '../state/session';
 import { stream } from '../state/stream';
 import { angleInPlane, clamp, placeOnLine, type Ray, snap, unwrapAngle } from './dragMaths';
-import type { Handle } from './handles';
+import type { Handle } from './handleTypes';
 
 export interface DragEnds {
   readonly camera: PerspectiveCamera;

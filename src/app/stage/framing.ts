@@ -6,7 +6,7 @@ export type View = (typeof VIEWS)[number];
 
 /** From the middle of the rig to the eye: unit vectors, world frame (x forward, y left, z up). */
 const EYES: Readonly<Record<View, Point>> = {
-  corner: [0.8, 0.45, 0.4],
+  corner: [0.72, 0.58, 0.36],
   front: [1, 0, 0.06],
   side: [0, 1, 0.06],
   // A hair off the vertical, so that forward stays upward in the picture.
@@ -76,7 +76,7 @@ const unit = (a: Point): Point => {
  *
  * @returns m. Exact for a perspective camera that looks at the middle of the box with z up in the picture.
  */
-export function frameDistance(box: Box, eye: Point, fov: number, frame: Frame, spare = 0.06): number {
+export function frameDistance(box: Box, eye: Point, fov: number, frame: Frame, spare = 0.08): number {
   const middle: Point = [
     (box.min[0] + box.max[0]) / 2,
     (box.min[1] + box.max[1]) / 2,

@@ -23,8 +23,8 @@ export interface Palette {
 
 /** What only the stage has a colour for. */
 const OWN = {
-  light: { chosen: '#0b7a72', body: '#e9e6dc', cargo: '#cfd6cf', gimbal: '#aab3b5', water: '#7fa9b8' },
-  dark: { chosen: '#5fd3c4', body: '#5b6972', cargo: '#6d7f7c', gimbal: '#87949b', water: '#4f8397' },
+  light: { chosen: '#0b7a72', body: '#efede6', cargo: '#c9d3cd', gimbal: '#aab4b7', water: '#6f9fb2' },
+  dark: { chosen: '#5fd3c4', body: '#75848d', cargo: '#7f938e', gimbal: '#98a5ac', water: '#4f8397' },
 } as const;
 
 /** Custom properties of the page that the stage follows, where the page has them. */

@@ -1,17 +1,11 @@
 /** The edits that handles make: a rig in, a rig out. Nothing here knows of pointers or pictures. */
-import type { Gyro, LeggedBody, Rig } from '../../core/rig';
+import type { Gyro, Rig } from '../../core/rig';
 import type { Point } from './bodyPlaces';
 
-export const withGyros = (rig: Rig, change: (gyro: Gyro, index: number) => Gyro): Rig => ({
+const withGyros = (rig: Rig, change: (gyro: Gyro, index: number) => Gyro): Rig => ({
   ...rig,
   array: { ...rig.array, gyros: rig.array.gyros.map(change) },
 });
-
-export const withLegged = (rig: Rig, change: (body: LeggedBody) => LeggedBody): Rig =>
-  rig.body.kind === 'legged' ? { ...rig, body: change(rig.body) } : rig;
-
-export const replaceAt = <T, L extends readonly T[]>(list: L, index: number, value: T): T[] =>
-  list.map((item, i) => (i === index ? value : item));
 
 const withCoordinate = (p: Point, axis: number, value: number): [number, number, number] => [
   axis === 0 ? value : p[0],

@@ -57,6 +57,9 @@ export interface StageSetting {
   readonly scales: QuantityScales;
 }
 
+/** Vertical field of view of the whole picture, degrees: narrow, so that true proportions look true. */
+export const FIELD_OF_VIEW = 30;
+
 /** Longest arc of an arrow, rad; straight arrows scale it to metres. */
 export const LONGEST_ARC = 2.2;
 

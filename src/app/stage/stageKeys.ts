@@ -3,7 +3,9 @@ import type { KeyboardEvent } from 'react';
 import { useDocument } from '../state/document';
 import { NOTHING_SELECTED, type Selection, useSession } from '../state/session';
 import { settle } from './dragging';
-import { type HandleKeys, handlesOf, selectableParts } from './handles';
+import { handlesOf } from './handles';
+import type { HandleKeys } from './handleTypes';
+import { selectableParts } from './parts';
 
 const NUDGES: Readonly<Record<string, readonly [keys: HandleKeys, sign: number]>> = {
   // Left is positive y.
