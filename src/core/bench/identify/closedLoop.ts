@@ -12,7 +12,7 @@ import {
   refuse,
   show,
 } from './result';
-import { predictRun, type RollParameters, type RunData } from './rollPrediction';
+import { layGrid, predictRun, type RollParameters, type RunData, type Stretch } from './rollPrediction';
 
 export interface ClosedLoopLog {
   /** s, rising, even to a few per cent. */
@@ -45,6 +45,13 @@ export interface ClosedLoopResult extends Identified {
   readonly spreadBefore: number;
 }
 
+export interface ClosedLoopOptions {
+  /** Which numbers may change; all five when absent. */
+  readonly free?: readonly ClosedLoopName[];
+  /** False leaves the search for the fewest changes out, which is most of the work. */
+  readonly findsFewest?: boolean;
+}
+
 const UNITS: Readonly<Record<ClosedLoopName, string>> = {
   inertia: 'kg·m²',
   momentum: 'N·m·s',
@@ -67,28 +74,32 @@ const QUANTITIES: Readonly<Record<ClosedLoopName, PatchQuantity>> = {
   centreOffset: 'centreOfMassOffset',
 };
 const MOST_POINTS = 20_000;
-/** A stretch whose misfit is this many times the usual was knocked and is left out. */
-const KNOCKED = 3;
+/** Length of the stretches in toppling times: short to find knocks by, then joined, since every start left free costs a little. */
+const SHORTEST = 2.5;
+const LONGEST = 10;
+/** A stretch was knocked when its misfit lies this many standard deviations of a pure-noise misfit above the usual. */
+const KNOCKED = 5;
 
 /**
  * Finds which numbers of the rig must change for the model to match a closed-loop run.
  *
- * The run is cut into stretches of about 2.5 toppling times, in each of which roll and roll rate start free (a body that
- * topples cannot be predicted for longer, and a knock spoils one stretch only); within a stretch the logged command
- * drives servo and body. Stiffness and weight are held, for only ratios to them show in the motion. The controller
+ * The run is cut into stretches in each of which roll and roll rate start free, for a body that topples cannot be predicted
+ * for long; within a stretch the logged command drives servo and body. Stretches of 2.5 toppling times show where the
+ * body was knocked; those that were not are joined to stretches of up to 10 for the fit proper, because with the loop
+ * closed each start left free pulls the answer a little (with short ones the inertia came out 1 % high). Stiffness and weight are held, for only ratios to them show in the motion. The controller
  * itself need not be known.
  *
  * @param log   run with the loop closed and something to see in it: shoves, set-point steps
  * @param rig   present numbers; where the search starts and what is compared
- * @param free  which may change; all five by default
  *
  * Source: Ljung, System Identification, 1999, ch. 13 (closed loop); Golub and Pereyra 1973 (variable projection).
  */
 export function identifyClosedLoop(
   log: ClosedLoopLog,
   rig: ClosedLoopRig,
-  free: readonly ClosedLoopName[] = CLOSED_LOOP_NAMES,
+  options: ClosedLoopOptions = {},
 ): ClosedLoopResult | Refused {
+  const free = options.free ?? CLOSED_LOOP_NAMES;
   const data = prepareRun(log, rig);
   if ('kind' in data) return data;
   const noise = differenceNoise(data.roll);
@@ -101,12 +112,23 @@ export function identifyClosedLoop(
   if (!(travel > 0)) return refuse('The tilt command never changes in this run.');
   let run = data;
   let outcome = fitRun(run, rig, free);
-  if (outcome.kind === 'gave-up') return refuse(outcome.sentence);
-  const quiet = outcome.kind === 'fitted' ? dropKnocked(run, outcome.fit.residuals) : run;
-  const knocked = run.starts.length - quiet.starts.length;
-  if (knocked > 0) {
+  // Knocks bend the first fit, so judge every stretch again by the fit without the worst of them.
+  for (let round = 0; round < 2 && outcome.kind === 'fitted'; round++) {
+    const left = new Float64Array(data.roll.length);
+    predictRun(data, withValues(rig, free, outcome.fit.values), left);
+    const quiet = dropKnocked(data, left);
+    if (
+      quiet.stretches.length === run.stretches.length &&
+      quiet.stretches.every((s, k) => s === run.stretches[k])
+    )
+      break;
     run = quiet;
-    outcome = fitRun(run, rig, free);
+    outcome = fitRun(run, rig, free, outcome.fit.values);
+  }
+  const knocked = data.stretches.length - run.stretches.length;
+  if (outcome.kind === 'fitted') {
+    run = { ...run, stretches: joinStretches(run, LONGEST / SHORTEST) };
+    outcome = fitRun(run, rig, free, outcome.fit.values);
   }
   if (outcome.kind !== 'fitted')
     return refuse(`${outcome.sentence} Hold one of them, or log a livelier run.`);
@@ -121,12 +143,15 @@ export function identifyClosedLoop(
     return e;
   });
   const mustChange = free.filter((name, j) => rig[name] < estimates[j].low || rig[name] > estimates[j].high);
-  const fewestChanges = findFewest(run, rig, free, fit.sumOfSquares, fit.degreesOfFreedom, fit.correlation);
+  const fewestChanges =
+    options.findsFewest === false
+      ? mustChange
+      : findFewest(run, rig, free, fit.sumOfSquares, fit.degreesOfFreedom, fit.correlation);
   const patches: Patch[] = mustChange.map((name) => patchOf(QUANTITIES[name], estimates[free.indexOf(name)]));
   const remarks = judgeResiduals(fit);
   if (knocked > 0)
     remarks.push(
-      `${knocked} of ${data.starts.length} stretches were knocked by something the log does not know and are left out.`,
+      `${knocked} of ${data.stretches.length} stretches were knocked by something the log does not know and are left out.`,
     );
   free.forEach((name, j) => {
     const e = estimates[j];
@@ -152,6 +177,24 @@ export function identifyClosedLoop(
   };
 }
 
+function withValues(
+  rig: RollParameters,
+  free: readonly ClosedLoopName[],
+  values: Float64Array,
+): Record<ClosedLoopName, number> {
+  const p: Record<ClosedLoopName, number> = {
+    inertia: rig.inertia,
+    momentum: rig.momentum,
+    lag: rig.lag,
+    delay: rig.delay,
+    centreOffset: rig.centreOffset,
+  };
+  free.forEach((name, j) => {
+    p[name] = values[j];
+  });
+  return p;
+}
+
 function prepareRun(log: ClosedLoopLog, rig: ClosedLoopRig): RunData | Refused {
   const n = log.time.length;
   if (n < 100) return refuse(`The log has ${n} readings of the run; 100 are needed.`);
@@ -173,18 +216,21 @@ function prepareRun(log: ClosedLoopLog, rig: ClosedLoopRig): RunData | Refused {
   }
   if (!(rig.inertia > 0)) return refuse(`The rig's inertia is ${rig.inertia} kg·m²: it must be above zero.`);
   const rate = Math.sqrt(Math.abs(rig.stiffness) / rig.inertia);
-  const length = Math.max(12, Math.min(Math.floor(n / 3), Math.round(2.5 / rate / step)));
-  const starts: number[] = [];
-  for (let i = 0; i + length <= n; i += length) starts.push(i);
+  const length = Math.max(12, Math.min(Math.floor(n / 3), Math.round(SHORTEST / rate / step)));
+  const time = log.time.map((t) => t - log.time[0]);
+  const stretches: Stretch[] = [];
+  // Where the servo stood before the log began is not known; by then it is forgotten.
+  const settled = Math.min(Math.floor(n / 4), Math.ceil((12 * (rig.lag + rig.delay)) / step));
+  for (let i = settled; i + length <= n; i += length) stretches.push({ from: i, length });
   return {
-    time: log.time.map((t) => t - log.time[0]),
+    time,
     roll: log.roll,
     command: log.tiltCommand,
     moment: log.moment,
     stiffness: rig.stiffness,
     weight: rig.weight,
-    length,
-    starts,
+    stretches,
+    ...layGrid(time, log.tiltCommand),
     step,
   };
 }
@@ -197,14 +243,13 @@ const SIZES = (rig: ClosedLoopRig): Readonly<Record<ClosedLoopName, number>> => 
   centreOffset: 1e-3,
 });
 
-function fitRun(run: RunData, rig: ClosedLoopRig, free: readonly ClosedLoopName[]): FitOutcome {
-  const p: Record<ClosedLoopName, number> = {
-    inertia: rig.inertia,
-    momentum: rig.momentum,
-    lag: rig.lag,
-    delay: rig.delay,
-    centreOffset: rig.centreOffset,
-  };
+function fitRun(
+  run: RunData,
+  rig: ClosedLoopRig,
+  free: readonly ClosedLoopName[],
+  from?: Float64Array,
+): FitOutcome {
+  const p = withValues(rig, free, from ?? Float64Array.from(free, (name) => rig[name]));
   const size = SIZES(rig);
   const lowest: Readonly<Record<ClosedLoopName, number>> = {
     inertia: 0.05 * rig.inertia,
@@ -228,10 +273,12 @@ function fitRun(run: RunData, rig: ClosedLoopRig, free: readonly ClosedLoopName[
     // Rows outside the stretches hold zero and count for nothing either.
     {
       isTimeSeries: true,
-      eliminated: 2 * run.starts.length + (run.roll.length - run.starts.length * run.length),
+      eliminated: 2 * run.stretches.length + run.roll.length - countReadings(run),
     },
   );
 }
+
+const countReadings = (run: RunData): number => run.stretches.reduce((n, s) => n + s.length, 0);
 
 function sumOfSquares(run: RunData, p: RollParameters): number {
   const out = new Float64Array(run.roll.length);
@@ -240,17 +287,39 @@ function sumOfSquares(run: RunData, p: RollParameters): number {
 }
 
 const measureSpread = (run: RunData, p: RollParameters): number =>
-  Math.sqrt(sumOfSquares(run, p) / Math.max(1, run.starts.length * (run.length - 2)));
+  Math.sqrt(sumOfSquares(run, p) / Math.max(1, countReadings(run) - 2 * run.stretches.length));
 
 function dropKnocked(run: RunData, residuals: Float64Array): RunData {
-  const spreads = run.starts.map((from) => {
+  const spreads = run.stretches.map(({ from, length }) => {
     let s = 0;
-    for (let i = from; i < from + run.length; i++) s += residuals[i] * residuals[i];
-    return Math.sqrt(s / run.length);
+    for (let i = from; i < from + length; i++) s += residuals[i] * residuals[i];
+    return Math.sqrt(s / length);
   });
   const usual = median(spreads);
-  const starts = run.starts.filter((_, k) => spreads[k] <= KNOCKED * usual);
-  return starts.length >= 2 ? { ...run, starts } : run;
+  const limit = usual * (1 + KNOCKED / Math.sqrt(2 * run.stretches[0].length));
+  const byMisfit = spreads.map((_, k) => k).sort((a, b) => spreads[b] - spreads[a]);
+  // At most a third: beyond that it is the model that fails, not the run.
+  const knocked = new Set(
+    byMisfit.slice(0, Math.floor(spreads.length / 3)).filter((k) => spreads[k] > limit),
+  );
+  return { ...run, stretches: run.stretches.filter((_, k) => !knocked.has(k)) };
+}
+
+/** Joins neighbouring stretches, at most so many to one. */
+function joinStretches(run: RunData, most: number): Stretch[] {
+  const joined: Stretch[] = [];
+  let count = 0;
+  for (const s of run.stretches) {
+    const last = joined[joined.length - 1];
+    if (last && last.from + last.length === s.from && count < most) {
+      joined[joined.length - 1] = { from: last.from, length: last.length + s.length };
+      count++;
+    } else {
+      joined.push(s);
+      count = 1;
+    }
+  }
+  return joined;
 }
 
 /** Forward selection: add the change that helps most until what is left is no better than changing all (F test, 1 %). */

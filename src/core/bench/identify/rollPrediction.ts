@@ -1,4 +1,4 @@
-import { findCommandChanges, simulateServo } from './servoMotion';
+import { findCommandChanges, type HeldCommand, simulateServo } from './servoMotion';
 
 /** The five numbers a closed-loop run can correct. */
 export interface RollParameters {
@@ -14,7 +14,13 @@ export interface RollParameters {
   readonly centreOffset: number;
 }
 
-/** A run cut into stretches of equal length, each with its own start. */
+/** Readings [from, from + length) that share one start. */
+export interface Stretch {
+  readonly from: number;
+  readonly length: number;
+}
+
+/** A run cut into stretches, each with its own start. */
 export interface RunData {
   readonly time: Float64Array;
   readonly roll: Float64Array;
@@ -22,13 +28,30 @@ export interface RunData {
   readonly moment: Float64Array | undefined;
   readonly stiffness: number;
   readonly weight: number;
-  readonly length: number;
-  readonly starts: readonly number[];
+  readonly stretches: readonly Stretch[];
   readonly step: number;
+  /** Instants at which the servo is asked for its tilt, and the command it follows. */
+  readonly grid: Float64Array;
+  readonly held: HeldCommand;
 }
 
 /** Runge-Kutta steps between two readings. */
 const SUBSTEPS = 2;
+
+/** Readings with the half steps of the integration between them, and the command as it is held. */
+export function layGrid(
+  time: Float64Array,
+  command: Float64Array,
+): { grid: Float64Array; held: HeldCommand } {
+  const n = time.length;
+  const fine = 2 * SUBSTEPS;
+  const grid = new Float64Array((n - 1) * fine + 1);
+  for (let i = 0; i + 1 < n; i++) {
+    for (let k = 0; k < fine; k++) grid[i * fine + k] = time[i] + ((time[i + 1] - time[i]) * k) / fine;
+  }
+  grid[(n - 1) * fine] = time[n - 1];
+  return { grid, held: findCommandChanges(time, command) };
+}
 
 /**
  * Residual (predicted minus measured roll) of every stretch, the best start of each already taken out; zero outside.
@@ -39,16 +62,8 @@ const SUBSTEPS = 2;
  * @param out  readings long, rad
  */
 export function predictRun(run: RunData, p: RollParameters, out: Float64Array): void {
-  const n = run.time.length;
-  const fine = 2 * SUBSTEPS;
-  const grid = new Float64Array((n - 1) * fine + 1);
-  for (let i = 0; i + 1 < n; i++) {
-    for (let k = 0; k < fine; k++)
-      grid[i * fine + k] = run.time[i] + ((run.time[i + 1] - run.time[i]) * k) / fine;
-  }
-  grid[(n - 1) * fine] = run.time[n - 1];
+  const { grid, held } = run;
   const tilt = new Float64Array(grid.length);
-  const held = findCommandChanges(run.time, run.command);
   simulateServo(
     { delay: p.delay, lag: p.lag, speedLimit: Number.POSITIVE_INFINITY, backlash: 0 },
     held,
@@ -59,10 +74,10 @@ export function predictRun(run: RunData, p: RollParameters, out: Float64Array): 
   const a2 = run.stiffness / p.inertia;
   const rest = (-run.weight * p.centreOffset) / p.inertia;
   out.fill(0);
-  const u = new Float64Array(run.length);
-  const v = new Float64Array(run.length);
-  for (const from of run.starts) {
-    forceStretch(run, a2, rest, p.inertia, tilt, from, out);
+  for (const { from, length } of run.stretches) {
+    const u = new Float64Array(length);
+    const v = new Float64Array(length);
+    forceStretch(run, a2, rest, p.inertia, tilt, from, length, out);
     freeStretch(run, a2, from, u, v);
     project(u, v, from, out);
   }
@@ -75,15 +90,16 @@ function forceStretch(
   inertia: number,
   tilt: Float64Array,
   from: number,
+  length: number,
   out: Float64Array,
 ): void {
   const fine = 2 * SUBSTEPS;
   let phi = 0;
   let psi = tilt[from * fine];
-  for (let j = 0; j < run.length; j++) {
+  for (let j = 0; j < length; j++) {
     const i = from + j;
     out[i] = phi - run.roll[i];
-    if (j === run.length - 1) break;
+    if (j === length - 1) break;
     const h = (run.time[i + 1] - run.time[i]) / SUBSTEPS;
     const m0 = run.moment ? run.moment[i] / inertia : 0;
     const m1 = run.moment ? run.moment[i + 1] / inertia : 0;
@@ -106,20 +122,25 @@ function forceStretch(
   }
 }
 
-/** Free motions from unit roll and unit rate. */
+/**
+ * The two free motions. For a body that topples they are taken as one that grows to 1 at the end and one that decays from
+ * 1 at the start: cosh and sinh span the same, but are all but parallel over a long stretch.
+ */
 function freeStretch(run: RunData, a2: number, from: number, u: Float64Array, v: Float64Array): void {
+  const n = u.length;
   const a = Math.sqrt(Math.abs(a2));
-  for (let j = 0; j < run.length; j++) {
+  const span = run.time[from + n - 1] - run.time[from];
+  for (let j = 0; j < n; j++) {
     const t = run.time[from + j] - run.time[from];
-    if (a * t < 1e-6) {
+    if (a * span < 1e-3) {
       u[j] = 1;
       v[j] = t;
     } else if (a2 > 0) {
-      u[j] = Math.cosh(a * t);
-      v[j] = Math.sinh(a * t) / a;
+      u[j] = Math.exp(a * (t - span));
+      v[j] = Math.exp(-a * t);
     } else {
       u[j] = Math.cos(a * t);
-      v[j] = Math.sin(a * t) / a;
+      v[j] = Math.sin(a * t);
     }
   }
 }
