@@ -32,12 +32,12 @@ export const reactionWheel: AxisArray = {
 };
 
 /** A body of 60 N that swings from foot to foot: ask of a sine, support first left, then right. */
-export function swayingFeet(intervals: number, amplitude: number, phase = 0): FirmSupport {
+export function swayingFeet(intervals: number, amplitude: number, phase = 0, cycles = 1): FirmSupport {
   const ask = new Float64Array(intervals);
   const pressureMin = new Float64Array(intervals);
   const pressureMax = new Float64Array(intervals);
   for (let k = 0; k < intervals; k++) {
-    const share = (k / intervals + phase) % 1;
+    const share = ((cycles * k) / intervals + phase) % 1;
     ask[k] = amplitude * Math.sin(2 * Math.PI * share);
     const isLeft = share < 0.5;
     pressureMin[k] = isLeft ? 0.01 : -0.03;

@@ -92,7 +92,8 @@ export async function run(): Promise<Row[]> {
     ),
     41,
   );
-  const long = timePlan({ ...walkingPlan(2400, 3), step: 2.4 / 240 / 10 }, 21);
+  const tenCycles = { array: pairOfWheels, support: swayingFeet(2400, 3, 0, 10), bodyRate: null };
+  const long = timePlan(cyclicPlan([tenCycles], 2400, 24), 21);
   const work = createPlanWork();
   const warm = measure(
     (i) => mustPlan(walkingPlan(240, 3 + 0.01 * (i % 2)), defaultPlanOptions, work),

@@ -1,4 +1,4 @@
-import { discretiseLean } from './leanStep';
+import { discretiseLean, type LeanStep } from './leanStep';
 import { scaleOfTorque } from './momentumPlanBounds';
 import { type AxisPlan, type LimitName, limitNames, type MomentumPlanProblem } from './momentumPlanProblem';
 
@@ -95,6 +95,7 @@ function checkInterval(
   i: number,
   k: number,
   refine: number,
+  fine: LeanStep | null,
   findings: Findings,
 ): void {
   const axis = problem.axes[i];
@@ -102,10 +103,6 @@ function checkInterval(
   const { step } = problem;
   const e0 = schedule.momentum[k];
   const rate = (schedule.momentum[k + 1] - e0) / step;
-  const fine =
-    support.kind === 'lean'
-      ? discretiseLean(support.inertia, support.stiffness, support.damping, step / refine)
-      : null;
   let lean = schedule.lean[k];
   let leanRate = schedule.leanRate[k];
   for (let j = 0; j <= refine; j++) {
@@ -185,9 +182,15 @@ export function checkPlanLimits(
   refine: number,
 ): LimitFinding[] {
   const findings: Findings = new Array(limitNames.length * problem.axes.length).fill(null);
-  for (let i = 0; i < problem.axes.length; i++) {
-    for (let k = 0; k < problem.intervals; k++) checkInterval(problem, schedules[i], i, k, refine, findings);
-  }
+  problem.axes.forEach(({ support }, i) => {
+    const fine =
+      support.kind === 'lean'
+        ? discretiseLean(support.inertia, support.stiffness, support.damping, problem.step / refine)
+        : null;
+    for (let k = 0; k < problem.intervals; k++) {
+      checkInterval(problem, schedules[i], i, k, refine, fine, findings);
+    }
+  });
   return limitNames.flatMap((limit, l) =>
     problem.axes.flatMap((_, axis) => {
       const worst = findings[axis * limitNames.length + l];

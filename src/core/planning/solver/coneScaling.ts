@@ -157,7 +157,7 @@ export function coneStep(
   const inverse = 1 / Math.sqrt(hyperbolicNorm2(x, at, dim));
   const first = stepNeed(x, d1, at, dim, inverse);
   const second = stepNeed(x, d2, at, dim, inverse);
-  const worst = first > second ? first : second;
+  const worst = Math.max(first, second);
   return worst * limit > 1 ? 1 / worst : limit;
 }
 
