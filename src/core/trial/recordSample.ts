@@ -1,7 +1,7 @@
 import { arrayMomentum } from '../physics';
 import { type AxisSchedule, type FirmPlanSetting, type LeanPlanSetting, pivotHeight } from '../planning';
 import type { Motion } from './motion';
-import type { PreviewRun } from './preview';
+import type { PreviewRun } from './previewRun';
 
 const momentumNow = new Float64Array(3);
 
