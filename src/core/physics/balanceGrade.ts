@@ -22,7 +22,7 @@ export const BALANCE_FORMULAS: FormulaNotes<
   force: { formula: 'F = U ω²', source: 'definition; Den Hartog, Mechanical Vibrations' },
   bearingForce: { formula: 'F_left = F b / (a + b), F_right = F a / (a + b)', source: 'statics' },
   vibration: {
-    formula: 'a = F/M + F l s / I, v = a/ω, x = a/ω², rate = F l / (I ω)',
+    formula: 'a = F/M + (I⁻¹ (l × F)) × s, v = a/ω, x = a/ω², rate = I⁻¹ (l × F) / ω',
     source: 'free rigid body above its mounting resonance; Den Hartog',
   },
   alias: { formula: 'f_a = |f − f_s round(f / f_s)|', source: 'sampling theorem' },

@@ -28,6 +28,7 @@ export * from './massProperties';
 export * from './reactions';
 export * from './rollMotion';
 export * from './rotatingDiscFlow';
+export * from './sensorShake';
 export * from './spatial';
 export * from './spin';
 export * from './spinCurve';

@@ -1,8 +1,10 @@
 /** Drag, motor and battery figures of the Spin up station. */
 import type { Figure } from '../units';
+import { BALANCE_FORMULAS } from './balanceGrade';
 import { BEARING_FORMULAS } from './bearings';
 import { DRIVE_FORMULAS } from './drive';
 import { figure, figureInput as input, speedInput as speedOf } from './figureParts';
+import type { SensorShake } from './sensorShake';
 import type { RigSpin, SpinReport } from './spin';
 import { BURST_FORMULAS } from './wheelBurst';
 import { WINDAGE_FORMULAS } from './windage';
@@ -117,6 +119,27 @@ export function driveFigures(report: SpinReport): readonly Figure[] {
     ),
   );
   return figures;
+}
+
+/** What one wheel's unbalance does to the sensor, as figures. */
+export function shakeFigures(shake: SensorShake, report: SpinReport, loopRate: number): readonly Figure[] {
+  const inputs = [input('Unbalance', report.unbalance, 'unbalance'), speedOf(report)];
+  const { vibration, alias } = BALANCE_FORMULAS;
+  return [
+    figure(
+      'sensorAcceleration',
+      'Shake at the sensor',
+      shake.acceleration,
+      'acceleration',
+      vibration,
+      inputs,
+    ),
+    figure('sensorRate', 'Shake of the rate gyro', shake.rate, 'angularRate', vibration, inputs),
+    figure('alias', 'Shows in the samples at', shake.alias, 'frequency', alias, [
+      input('Frequency of the wheel', shake.frequency, 'frequency'),
+      input('Loop rate', loopRate, 'frequency'),
+    ]),
+  ];
 }
 
 /** Figures of the whole array on its battery. */

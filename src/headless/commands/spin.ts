@@ -1,4 +1,11 @@
-import { arraySpinFigures, describeTrigger, type SpinReport, spinFigures, spinRig } from '../../core/physics';
+import {
+  arraySpinFigures,
+  describeTrigger,
+  type SpinReport,
+  shakeFigures,
+  spinFigures,
+  spinRig,
+} from '../../core/physics';
 import type { Command } from '../command';
 
 /** What is wrong with a wheel, in words; empty for one that may be spun. */
@@ -63,10 +70,11 @@ export const spinCommand: Command = {
       }
     });
     if (sentences.length > 0) return { kind: 'refused', sentences };
-    const gyros = reports.map((report) => ({
+    const gyros = reports.map((report, i) => ({
       name: report.gyro.name,
       failures: failuresOf(report),
       figures: Object.fromEntries(spinFigures(report).map(({ name, figures }) => [name, figures])),
+      sensor: shakeFigures(spin.shakes[i]!, report, rig.sensing.loopRate),
       stressLines: report.stress.lines,
       joints: report.stress.joints,
       contacts: report.stress.contacts,
