@@ -10,6 +10,7 @@ import {
   SRGBColorSpace,
 } from 'three';
 import { formatQuantity } from '../../core/units';
+import { useSession } from '../state/session';
 import { GRID_LEADS, roundUp } from './arrowScale';
 import { useGeometry } from './Inked';
 import { segmentsGeometry } from './shapes';
@@ -66,6 +67,12 @@ export function useTexture(
   return texture;
 }
 
+/** The side of a cell in words, in the unit chosen for lengths or else in the one that suits it. */
+function useCellName(step: number): string {
+  const chosen = useSession((state) => state.units.length);
+  return formatQuantity(step, 'length', chosen ?? (step < 0.5 ? 'mm' : 'm'), 2);
+}
+
 const AXIS_NAMES = ['x', 'y'] as const;
 
 /** The ground, or the floor of the picture below a hull: a quiet grid that goes along with the body by whole cells. */
@@ -73,6 +80,7 @@ export function Ground() {
   const { frame, palette, size } = useStage();
   const group = useRef<Group>(null);
   const step = gridStep(size);
+  const cell = useCellName(step);
   const grid = useGeometry(() => gridGeometry(step, palette.line, palette.page), [step, palette]);
   const axes = useGeometry(() => segmentsGeometry([0, 0, 0, step, 0, 0, 0, 0, 0, 0, step, 0]), [step]);
   useFrame(() => {
@@ -96,7 +104,7 @@ export function Ground() {
       {AXIS_NAMES.map((name, i) => (
         <Label
           key={name}
-          text={name === 'x' ? `x  ${formatQuantity(step, 'length')}` : 'y'}
+          text={name === 'x' ? `x  ${cell}` : 'y'}
           at={i === 0 ? [1.06 * step, 0, 0] : [0, 1.08 * step, 0]}
         />
       ))}
@@ -184,26 +192,25 @@ function ContactShadow() {
   );
 }
 
-/** Lines across the water to either side of the middle. */
-const WATER_LINES = 8;
-
 /** The surface of the water at the body's middle, at its height and slope. */
 export function Water() {
-  const { frame, palette, box } = useStage();
+  const { frame, palette, box, size } = useStage();
   const group = useRef<Group>(null);
+  const step = gridStep(size);
+  const cell = useCellName(step);
   const length = 1.35 * (box.max[0] - box.min[0]);
-  const width = 2.4 * (box.max[1] - box.min[1]);
+  // A whole number of cells to each side, so that the lines measure.
+  const cells = Math.max(2, Math.round((1.2 * (box.max[1] - box.min[1])) / step));
+  const width = 2 * cells * step;
   const sheet = useGeometry(() => new PlaneGeometry(length, width), [length, width]);
   const lines = useGeometry(() => {
     const points: number[] = [];
-    for (let i = -WATER_LINES; i <= WATER_LINES; i++) {
-      const y = (i / WATER_LINES) * (width / 2);
-      points.push(-length / 2, y, 0, length / 2, y, 0);
-    }
+    for (let i = -cells; i <= cells; i++) points.push(-length / 2, i * step, 0, length / 2, i * step, 0);
     for (const end of [-1, 1])
       points.push((end * length) / 2, -width / 2, 0, (end * length) / 2, width / 2, 0);
     return segmentsGeometry(points);
-  }, [length, width]);
+  }, [length, width, cells, step]);
+  const hasWater = Number.isFinite(frame.instant.water);
   useFrame(() => {
     if (!group.current) return;
     const { pose, water, waterSlope } = frame.instant;
@@ -225,6 +232,7 @@ export function Water() {
       <lineSegments geometry={lines} renderOrder={1}>
         <lineBasicMaterial color={palette.water} transparent opacity={0.5} depthWrite={false} />
       </lineSegments>
+      {hasWater && <Label text={cell} at={[length / 2, (cells - 0.9) * step, 0]} />}
     </group>
   );
 }

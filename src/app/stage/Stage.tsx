@@ -10,7 +10,6 @@ import { type Palette, usePalette } from './palette';
 import { partName } from './parts';
 import { describeInstant } from './poseSummary';
 import { Scene } from './Scene';
-import { canDrawStage, StageBoundary, StageMessage } from './StageBoundary';
 import { StageCaption } from './StageCaption';
 import { createStageFrame, FIELD_OF_VIEW } from './stageFrame';
 import { onStageKeyDown, onStageKeyUp } from './stageKeys';
@@ -31,19 +30,11 @@ const stageEvents: typeof pointerEvents = (store) => ({ ...pointerEvents(store),
 
 const clearSelection = (): void => useSession.getState().select(NOTHING_SELECTED);
 
-/** The 3D view. Mount it once; it draws the document's rig as the stream has it. */
+/**
+ * The 3D view. Mount it once; it draws the document's rig as the stream has it. Whoever mounts it has asked
+ * whether the browser can draw it and catches what it throws.
+ */
 export function Stage() {
-  const [canDraw] = useState(canDrawStage);
-  return canDraw ? (
-    <StageBoundary>
-      <StageView />
-    </StageBoundary>
-  ) : (
-    <StageMessage reason="this browser offers no WebGL 2." />
-  );
-}
-
-function StageView() {
   const palette = usePalette();
   const [ask, setAsk] = useState<ViewAsk>({ view: 'frame', count: 0 });
   const [isReady, setReady] = useState(false);
@@ -66,7 +57,7 @@ function StageView() {
   return (
     <section
       className="stage"
-      aria-label="Stage"
+      aria-label="3D view"
       aria-describedby={keysId}
       // biome-ignore lint/a11y/noNoninteractiveTabindex: the stage takes keys of its own, which its description tells.
       tabIndex={0}
@@ -88,7 +79,7 @@ function StageView() {
         <Scene palette={palette} ask={ask} />
       </Canvas>
       <ViewButtons onView={(view) => setAsk(({ count }) => ({ view, count: count + 1 }))} />
-      <StageCaption />
+      <StageCaption palette={palette} />
       <FallNotice />
       <DragReadout palette={palette} />
       <Summary id={summaryId} />

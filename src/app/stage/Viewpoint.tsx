@@ -4,6 +4,7 @@ import { useCallback, useEffect, useRef } from 'react';
 import { type PerspectiveCamera, Vector3 } from 'three';
 import { useSession } from '../state/session';
 import { type Box, boxCentre, type Point } from './bodyPlaces';
+import { isDragging } from './dragging';
 import { eyeDirection, frameDistance, freeArea, type View } from './framing';
 import { FIELD_OF_VIEW, useStage } from './stageFrame';
 
@@ -48,6 +49,7 @@ export function Viewpoint({ ask }: { readonly ask: ViewAsk }) {
   const invalidate = useThree((state) => state.invalidate);
   const insets = useSession((state) => state.stageInsets);
   const isTouched = useRef(false);
+  const pressed = useRef(new Vector3());
   const framedSize = useRef(0);
   const framedKind = useRef('');
 
@@ -79,16 +81,22 @@ export function Viewpoint({ ask }: { readonly ask: ViewAsk }) {
     invalidate();
   }, [camera, insets, invalidate, viewport]);
 
-  // Framed on load, when the room changes before the eye was moved by hand, and when the rig is another.
+  // Framed on load, when the rig is another, and when the room changes before the eye was moved by hand; never
+  // by an edit, which must not move the picture under the hand that makes it.
+  const room = useRef<readonly unknown[]>([]);
   useEffect(() => {
+    if (!controls) return;
     const ratio = framedSize.current > 0 ? size / framedSize.current : Number.POSITIVE_INFINITY;
     const isAnother = rig.body.kind !== framedKind.current || ratio > RESIZE || ratio < 1 / RESIZE;
-    if (!controls || (!isAnother && isTouched.current)) return;
-    if (isAnother) isTouched.current = false;
-    if (isAnother || framedSize.current > 0) look(eyeDirection('corner'));
-    framedSize.current = size;
-    framedKind.current = rig.body.kind;
-  }, [controls, look, rig.body.kind, size]);
+    const isRoomNew = room.current[0] !== viewport || room.current[1] !== insets;
+    room.current = [viewport, insets];
+    if (isAnother) {
+      framedSize.current = size;
+      framedKind.current = rig.body.kind;
+      if (!isDragging()) isTouched.current = false;
+    }
+    if ((isAnother && !isDragging()) || (isRoomNew && !isTouched.current)) look(eyeDirection('corner'));
+  }, [controls, insets, look, rig.body.kind, size, viewport]);
 
   const lookNow = useRef(look);
   lookNow.current = look;
@@ -125,8 +133,10 @@ export function Viewpoint({ ask }: { readonly ask: ViewAsk }) {
       makeDefault
       enableDamping={false}
       zoomSpeed={0.8}
-      onStart={() => {
-        isTouched.current = true;
+      onStart={() => pressed.current.copy(camera.position)}
+      onEnd={() => {
+        // A tap moves nothing and is no wish to look from elsewhere.
+        if (pressed.current.distanceTo(camera.position) > 1e-9) isTouched.current = true;
       }}
     />
   );

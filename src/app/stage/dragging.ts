@@ -45,6 +45,10 @@ export const describeValue = (handle: Pick<Handle, 'info'>, value: number): stri
 export const settle = (handle: Handle, value: number): number =>
   clamp(snap(value, handle.step), handle.info.min, handle.info.max);
 
+let dragsUnderWay = 0;
+
+export const isDragging = (): boolean => dragsUnderWay > 0;
+
 /** Follows a press on a grip until it is released or taken away. */
 export function beginDrag(handle: Handle, press: PointerEvent, ends: DragEnds): void {
   const { canvas, controls } = ends;
@@ -57,6 +61,7 @@ export function beginDrag(handle: Handle, press: PointerEvent, ends: DragEnds): 
   if (startOf === undefined) return;
   let last = startOf;
   if (controls) controls.enabled = false;
+  dragsUnderWay += 1;
   stream.pause();
   documentState.begin(handle.info.label);
 
@@ -75,6 +80,7 @@ export function beginDrag(handle: Handle, press: PointerEvent, ends: DragEnds): 
     removeEventListener('pointercancel', takeAway);
     removeEventListener('keydown', giveUp, true);
     if (controls) controls.enabled = true;
+    dragsUnderWay -= 1;
     if (isKept) useDocument.getState().commit();
     else useDocument.getState().cancel();
     tell(undefined);

@@ -37,13 +37,13 @@ const PROPERTIES = {
   fail: '--fail',
 } as const;
 
-/** Reads any CSS colour as sRGB by letting the browser draw it: three knows only some of the ways to write one. */
-function readColour(css: string, fallback: string): Color {
-  const text = css.trim();
-  if (text === '' || text === fallback) return new Color(fallback);
-  if (/^#[0-9a-f]{6}$/i.test(text)) return new Color(text);
+/** The colour that a CSS property has on the page just now, as sRGB: three knows only some of the ways to write one. */
+function readColour(probe: HTMLElement, property: string, fallback: string): Color {
+  // Asked of an element, as a property by itself may still hold a choice between light and dark.
+  probe.style.color = `var(${property}, ${fallback})`;
+  const text = getComputedStyle(probe).color;
   const context = document.createElement('canvas').getContext('2d', { willReadFrequently: true });
-  if (!context) return new Color(fallback);
+  if (text === '' || !context) return new Color(fallback);
   context.fillStyle = fallback;
   context.fillStyle = text;
   context.fillRect(0, 0, 1, 1);
@@ -51,14 +51,13 @@ function readColour(css: string, fallback: string): Color {
   return new Color(`rgb(${r}, ${g}, ${b})`);
 }
 
-export function readPalette(isDark: boolean, root: Element): Palette {
+export function readPalette(isDark: boolean): Palette {
   const theme = isDark ? 'dark' : 'light';
-  const style = getComputedStyle(root);
   const page = PAGE_COLOURS[theme];
-  const of = (key: keyof typeof PROPERTIES): Color =>
-    readColour(style.getPropertyValue(PROPERTIES[key]), page[key]);
+  const probe = document.body.appendChild(document.createElement('span'));
+  const of = (key: keyof typeof PROPERTIES): Color => readColour(probe, PROPERTIES[key], page[key]);
   const own = OWN[theme];
-  return {
+  const palette = {
     isDark,
     page: of('page'),
     raised: of('raised'),
@@ -78,6 +77,8 @@ export function readPalette(isDark: boolean, root: Element): Palette {
       leak: new Color(QUANTITY_MARKS.leak[theme]),
     },
   };
+  probe.remove();
+  return palette;
 }
 
 const SYSTEM_DARK = '(prefers-color-scheme: dark)';
@@ -87,7 +88,7 @@ export function usePalette(): Palette {
   const theme = useSession((state) => state.theme);
   const read = (): Palette => {
     const isDark = theme === 'dark' || (theme === 'system' && matchMedia(SYSTEM_DARK).matches);
-    return readPalette(isDark, document.documentElement);
+    return readPalette(isDark);
   };
   const [palette, setPalette] = useState(read);
   // biome-ignore lint/correctness/useExhaustiveDependencies: `read` is made anew by every render and depends on the theme alone.
