@@ -28,7 +28,7 @@ export interface GainMap {
 /**
  * Where in the plane of two gains the loop holds, with the others as they are.
  *
- * Every point counts its growing modes exactly by the argument principle; about 15 microseconds each.
+ * Every point counts its growing modes exactly by the argument principle; about 10 microseconds each.
  */
 export function mapGains(request: MapRequest): GainMap {
   const { plant, estimator, law, across, up, columns, rows } = request;

@@ -1,6 +1,6 @@
 import { Matrix } from 'ml-matrix';
 import type { Controller, FeedbackGains } from './controllers';
-import { describeEstimator, type EstimatorModel } from './estimators';
+import { describeEstimator, type EstimatorModel, type LinearEstimator } from './estimators';
 import { PLANT_OUTPUT, type RollTiltPlant, type SampledPlant, samplePlant } from './plantModels';
 
 /** Laws whose loop can be judged by linear means, each with its gains in the order used everywhere. */
@@ -74,73 +74,77 @@ export function buildClosedLoop(loop: LoopModel): Matrix {
   const n = rate + (hasRate ? 1 : 0);
   const dt = p.sampleTime;
 
-  const row = (): Float64Array => new Float64Array(n);
-  const output = (which: number, scale: number, into: Float64Array): void => {
-    for (let j = 0; j < np; j++) into[j]! += scale * p.C.get(which, j);
-  };
-  const lean = row();
-  const leanRate = row();
   const a = Matrix.zeros(n, n);
   a.setSubMatrix(p.A, 0, 0);
-  if (e === undefined) {
-    output(PLANT_OUTPUT.roll, 1, lean);
-    output(PLANT_OUTPUT.rollRate, 1, leanRate);
-  } else {
-    const estimates = [lean, leanRate];
-    for (let i = 0; i < 2; i++) {
-      output(PLANT_OUTPUT.rollRate, e.D.get(i, 0), estimates[i]!);
-      output(PLANT_OUTPUT.apparentRoll, e.D.get(i, 1), estimates[i]!);
-      for (let j = 0; j < ne; j++) estimates[i]![np + j]! += e.C.get(i, j);
-    }
-    a.setSubMatrix(e.A, np, np);
-    for (let i = 0; i < ne; i++) {
-      for (let j = 0; j < np; j++) {
-        a.set(
-          np + i,
-          j,
-          e.B.get(i, 0) * p.C.get(PLANT_OUTPUT.rollRate, j) +
-            e.B.get(i, 1) * p.C.get(PLANT_OUTPUT.apparentRoll, j),
-        );
-      }
-    }
-  }
+  const lean = new Float64Array(n);
+  const leanRate = new Float64Array(n);
+  senseState(p, e, a, lean, leanRate);
 
-  const command = row();
+  /* What the law says, as a row over the state; then what the firmware keeps and what it sends. */
+  const law = new Float64Array(n);
+  const command = new Float64Array(n);
   const newest = p.plantStates;
-  const addTo = (into: Float64Array, from: Float64Array, scale: number): void => {
-    for (let j = 0; j < n; j++) into[j]! += scale * from[j]!;
-  };
   if (isPid) {
-    const law = row();
-    addTo(law, lean, g[0]! + g[1]! * dt);
-    addTo(law, leanRate, g[2]!);
+    addRow(law, lean, g[0]! + g[1]! * dt);
+    addRow(law, leanRate, g[2]!);
     if (hasExtra) {
       law[extra]! += g[1]!;
       for (let j = 0; j < n; j++) a.set(extra, j, dt * lean[j]! + (j === extra ? 1 : 0));
     }
-    addTo(command, law, loop.law === 'pidTilt' ? 1 : dt);
+    addRow(command, law, loop.law === 'pidTilt' ? 1 : dt);
     if (loop.law === 'pidTiltRate') command[newest]! += 1;
   } else if (loop.law === 'feedback') {
-    const law = row();
-    addTo(law, lean, g[0]!);
-    addTo(law, leanRate, g[1]!);
+    addRow(law, lean, g[0]!);
+    addRow(law, leanRate, g[1]!);
     law[newest]! += g[2]!;
     if (hasRate) law[rate]! += g[3]!;
     if (hasExtra) law[extra]! += g[4]!;
     command[newest]! += 1;
-    addTo(command, law, dt);
+    addRow(command, law, dt);
     if (hasRate) for (let j = 0; j < n; j++) a.set(rate, j, law[j]!);
     if (hasExtra) for (let j = 0; j < n; j++) a.set(extra, j, dt * command[j]! + (j === extra ? 1 : 0));
   } else {
-    addTo(command, lean, g[0]!);
-    addTo(command, leanRate, g[1]!);
-    output(PLANT_OUTPUT.store, g[2]!, command);
+    addRow(command, lean, g[0]!);
+    addRow(command, leanRate, g[1]!);
+    addRow(command, p.C.getRow(PLANT_OUTPUT.store), g[2]!);
   }
   for (let i = 0; i < np; i++) {
     const b = p.B.get(i, 0);
     if (b !== 0) for (let j = 0; j < n; j++) a.set(i, j, a.get(i, j) + b * command[j]!);
   }
   return dropHidden(loop, a, p, extra, hasExtra);
+}
+
+const addRow = (into: Float64Array, from: ArrayLike<number>, scale: number): void => {
+  for (let j = 0; j < from.length; j++) into[j]! += scale * from[j]!;
+};
+
+/* Rows of the estimated lean and lean rate over the state, and the estimator's own rows of the map. */
+function senseState(
+  p: SampledPlant,
+  e: LinearEstimator | undefined,
+  a: Matrix,
+  lean: Float64Array,
+  leanRate: Float64Array,
+): void {
+  const rate = p.C.getRow(PLANT_OUTPUT.rollRate);
+  if (e === undefined) {
+    addRow(lean, p.C.getRow(PLANT_OUTPUT.roll), 1);
+    addRow(leanRate, rate, 1);
+    return;
+  }
+  const apparent = p.C.getRow(PLANT_OUTPUT.apparentRoll);
+  const np = p.A.rows;
+  const estimates = [lean, leanRate];
+  for (let i = 0; i < 2; i++) {
+    addRow(estimates[i]!, rate, e.D.get(i, 0));
+    addRow(estimates[i]!, apparent, e.D.get(i, 1));
+    for (let j = 0; j < e.A.rows; j++) estimates[i]![np + j]! += e.C.get(i, j);
+  }
+  a.setSubMatrix(e.A, np, np);
+  for (let i = 0; i < e.A.rows; i++) {
+    for (let j = 0; j < np; j++) a.set(np + i, j, e.B.get(i, 0) * rate[j]! + e.B.get(i, 1) * apparent[j]!);
+  }
 }
 
 /*

@@ -94,73 +94,80 @@ function refinePeak(respond: Response, low: number, high: number): { omega: numb
  * all crossings of |L| = 1. For a sampled loop that last is an approximation good to (omega dt)^2.
  */
 export function measureMargins(respond: Response, from: number, to: number, points = 600): Margins {
+  const grid = Float64Array.from({ length: points }, (_, i) => from * (to / from) ** (i / (points - 1)));
+  grid[points - 1] = to;
+  const re = new Float64Array(points);
+  const im = new Float64Array(points);
   const out = new Float64Array(2);
-  const ratio = (to / from) ** (1 / (points - 1));
+  for (let i = 0; i < points; i++) {
+    respond(grid[i]!, out);
+    re[i] = out[0]!;
+    im[i] = out[1]!;
+  }
+  return {
+    ...findGainMargins(respond, grid, re, im),
+    ...findPhaseMargins(respond, grid, re, im),
+    ...findPeak(respond, grid, re, im),
+  };
+}
+
+type Sweep = [respond: Response, grid: Float64Array, re: Float64Array, im: Float64Array];
+
+function findGainMargins(...[respond, grid, re, im]: Sweep): Pick<Margins, 'gainUp' | 'gainDown'> {
   let gainUp = Number.POSITIVE_INFINITY;
   let gainDown = 0;
-  let phase = Number.POSITIVE_INFINITY;
-  let delay = Number.POSITIVE_INFINITY;
-  let delayFrequency = Number.NaN;
-  let sensitivity = 0;
-  let peakAt = 0;
-  const grid = new Float64Array(points);
-  const noteGain = (re: number): void => {
-    if (re >= 0) return;
-    const factor = -1 / re;
+  const note = (real: number): void => {
+    if (real >= 0) return;
+    const factor = -1 / real;
     if (factor > 1) gainUp = Math.min(gainUp, factor);
     else gainDown = Math.max(gainDown, factor);
   };
-  let omega = from;
-  let lastRe = 0;
-  let lastIm = 0;
-  for (let i = 0; i < points; i++) {
-    if (i === points - 1) omega = to;
-    grid[i] = omega;
-    respond(omega, out);
-    const re = out[0]!;
-    const im = out[1]!;
-    const peak = 1 / Math.sqrt((1 + re) ** 2 + im * im);
-    if (peak > sensitivity) {
-      sensitivity = peak;
-      peakAt = i;
-    }
-    if (i > 0) {
-      if (im < 0 !== lastIm < 0 && (re < 0 || lastRe < 0)) {
-        noteGain(refine(respond, grid[i - 1]!, omega, (_, y) => y).re);
-      }
-      const inside = re * re + im * im < 1;
-      if (inside !== lastRe * lastRe + lastIm * lastIm < 1) {
-        const c = refine(respond, grid[i - 1]!, omega, (x, y) => x * x + y * y - 1);
-        /* Lag that turns L to -1, from 0 to a full turn. */
-        let lag = Math.atan2(c.im, c.re) + Math.PI;
-        if (lag < 0) lag += 2 * Math.PI;
-        phase = Math.min(phase, lag, 2 * Math.PI - lag);
-        if (lag / c.omega < delay) {
-          delay = lag / c.omega;
-          delayFrequency = c.omega;
-        }
-      }
-    }
-    lastRe = re;
-    lastIm = im;
-    omega *= ratio;
+  const last = grid.length - 1;
+  for (let i = 1; i <= last; i++) {
+    if (im[i]! < 0 === im[i - 1]! < 0 || (re[i]! >= 0 && re[i - 1]! >= 0)) continue;
+    note(refine(respond, grid[i - 1]!, grid[i]!, (_, y) => y).re);
   }
   /* The ends of the grid stand for zero frequency and for Nyquist's, where L is real. */
-  respond(from, out);
-  if (Math.abs(out[1]!) < 1e-3 * Math.abs(out[0]!)) noteGain(out[0]!);
-  respond(to, out);
-  if (Math.abs(out[1]!) < 1e-3 * Math.abs(out[0]!)) noteGain(out[0]!);
-  const sharp = refinePeak(respond, grid[Math.max(peakAt - 1, 0)]!, grid[Math.min(peakAt + 1, points - 1)]!);
-  const best = sharp.peak > sensitivity ? sharp : { omega: grid[peakAt]!, peak: sensitivity };
-  return {
-    gainUp,
-    gainDown,
-    phase,
-    delay,
-    delayFrequency,
-    sensitivity: best.peak,
-    sensitivityFrequency: best.omega,
-  };
+  for (const end of [0, last]) if (Math.abs(im[end]!) < 1e-3 * Math.abs(re[end]!)) note(re[end]!);
+  return { gainUp, gainDown };
+}
+
+function findPhaseMargins(
+  ...[respond, grid, re, im]: Sweep
+): Pick<Margins, 'phase' | 'delay' | 'delayFrequency'> {
+  let phase = Number.POSITIVE_INFINITY;
+  let delay = Number.POSITIVE_INFINITY;
+  let delayFrequency = Number.NaN;
+  const isInside = (i: number): boolean => re[i]! * re[i]! + im[i]! * im[i]! < 1;
+  for (let i = 1; i < grid.length; i++) {
+    if (isInside(i) === isInside(i - 1)) continue;
+    const c = refine(respond, grid[i - 1]!, grid[i]!, (x, y) => x * x + y * y - 1);
+    /* Lag that turns L to -1, from 0 to a full turn. */
+    let lag = Math.atan2(c.im, c.re) + Math.PI;
+    if (lag < 0) lag += 2 * Math.PI;
+    phase = Math.min(phase, lag, 2 * Math.PI - lag);
+    if (lag / c.omega < delay) {
+      delay = lag / c.omega;
+      delayFrequency = c.omega;
+    }
+  }
+  return { phase, delay, delayFrequency };
+}
+
+function findPeak(...[respond, grid, re, im]: Sweep): Pick<Margins, 'sensitivity' | 'sensitivityFrequency'> {
+  let sensitivity = 0;
+  let at = 0;
+  for (let i = 0; i < grid.length; i++) {
+    const peak = 1 / Math.sqrt((1 + re[i]!) ** 2 + im[i]! ** 2);
+    if (peak > sensitivity) {
+      sensitivity = peak;
+      at = i;
+    }
+  }
+  const sharp = refinePeak(respond, grid[Math.max(at - 1, 0)]!, grid[Math.min(at + 1, grid.length - 1)]!);
+  return sharp.peak > sensitivity
+    ? { sensitivity: sharp.peak, sensitivityFrequency: sharp.omega }
+    : { sensitivity, sensitivityFrequency: grid[at]! };
 }
 
 /** The loop gain of a sampled loop as a function of frequency (rad/s). */

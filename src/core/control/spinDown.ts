@@ -92,7 +92,7 @@ export interface SpeedDesign {
   readonly outcome: DesignOutcome;
 }
 
-/** Gains designed afresh at each share of wheel speed. About 0.1 s each. */
+/** Gains designed afresh at each share of wheel speed. About 0.05 s each. */
 export function designAgainstSpeed(request: DesignRequest, shares: readonly number[]): SpeedDesign[] {
   return shares.map((share) => ({
     share,

@@ -18,6 +18,7 @@ import {
 } from '../../../src/core/control/rollLoopModel';
 import { NO_VIBRATION, type SensorModel } from '../../../src/core/control/sensorModel';
 import type { ServoModel } from '../../../src/core/control/servoModel';
+import { findLeastSpeed } from '../../../src/core/control/spinDown';
 import { expectClose } from '../../support/closeTo';
 
 const PERFECT_SERVO: ServoModel = {
@@ -472,5 +473,84 @@ describe('passive gimbal', () => {
     const growth = Math.max(...re);
     expectClose(growth, 0.04232784, { rel: 1e-6 });
     expectClose(measureGrowth(build2(1.5, 0.005), 60), growth, { rel: 0.05 }); // measured 9e-4
+  });
+});
+
+describe('wheel speed while the gimbal moves', () => {
+  const servo = { ...PERFECT_SERVO, lag: 0.02 };
+  const INERTIA = 6e-4;
+  const spun = (spin: { gain: number; limit: number; drag: number }): RollLoopModel =>
+    build(
+      { law: 'feedback', gains: FEEDBACK },
+      {
+        actuator: {
+          kind: 'servo',
+          gimbals: [
+            {
+              servo,
+              momentum: 0.6,
+              yawMomentum: 0,
+              follow: 1,
+              spin: { kind: 'governed', inertia: INERTIA, ...spin },
+            },
+          ],
+        },
+      },
+    );
+  const momentumAfter = (model: RollLoopModel, duration: number, roll = 0): number => {
+    const work = createRollLoopWork(model);
+    runRollLoop(model, work, NO_DISTURBANCE, { ...START, roll, duration }, undefined);
+    return work.actuator.momentum[0]!;
+  };
+
+  it('coasts down at drag over inertia when the motor is off', () => {
+    /* at rest upright the momentum is inertia times speed: exp(-t drag / inertia) */
+    const left = momentumAfter(spun({ gain: 0, limit: 0, drag: 3e-5 }), 10);
+    expectClose(left, 0.6 * Math.exp((-10 * 3e-5) / INERTIA), { rel: 2e-5 }); // measured 6e-6, the step's order
+  });
+
+  it('holds its speed, not its momentum, with a strong motor: h = J (speed + roll rate sin(tilt))', () => {
+    const model = spun({ gain: 0.3, limit: 10, drag: 3e-5 });
+    const work = createRollLoopWork(model);
+    runRollLoop(model, work, NO_DISTURBANCE, { ...START, roll: 0.08, duration: 0.06 }, undefined);
+    const turned = INERTIA * work.body[1]! * Math.sin(work.actuator.tilt[0]!);
+    expect(Math.abs(turned)).toBeGreaterThan(1e-5);
+    expectClose(work.actuator.momentum[0]! - 0.6, turned, { rel: 0.2 }); // measured 0.085: the motor lags J / gain = 2 ms
+  });
+
+  it('falls when the wheel has coasted below the least speed, at about that speed', () => {
+    const least = findLeastSpeed(linear(PLANT, 'feedback', FEEDBACK));
+    if (least.kind !== 'found') throw new Error('there is a least speed');
+    /* sensor noise keeps the body from resting on the edge */
+    const model = {
+      ...spun({ gain: 0, limit: 0, drag: 2e-5 }),
+      sensor: { ...quietSensor(0.002), gyroNoise: 1e-3 },
+    };
+    const work = createRollLoopWork(model);
+    const out = runRollLoop(model, work, NO_DISTURBANCE, { ...START, roll: 1e-3, duration: 90 }, undefined);
+    expect(out.hasFallen).toBe(true);
+    /* it goes on falling slowly for a while below the border, so the wheel is a little slower when it is down */
+    const share = work.actuator.momentum[0]! / 0.6;
+    expect(share).toBeLessThan(least.share);
+    expect(share).toBeGreaterThan(0.7 * least.share); // measured 0.80
+  });
+});
+
+describe('jitter of the loop', () => {
+  it('spreads the answer and leaves its mean: a run with jitter stays near the run without', () => {
+    const steady = run(build({ law: 'feedback', gains: FEEDBACK }), { roll: 0.05, duration: 0.5 }).finalRoll;
+    const jittered = Array.from(
+      { length: 30 },
+      (_, i) =>
+        run(build({ law: 'feedback', gains: FEEDBACK }, { loopJitter: 0.0015 }), {
+          roll: 0.05,
+          duration: 0.5,
+          run: i,
+        }).finalRoll,
+    );
+    const mean = jittered.reduce((sum, x) => sum + x / 30, 0);
+    const spread = Math.sqrt(jittered.reduce((sum, x) => sum + (x - mean) ** 2 / 29, 0));
+    expect(spread).toBeGreaterThan(1e-6);
+    expectClose(mean, steady, { abs: (4 * spread) / Math.sqrt(30) });
   });
 });
