@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { type ClosedLoopLog, identifyClosedLoop } from '../../src/core/bench/identify/closedLoop';
-import { createSeededStream } from '../../src/core/bench/statistics';
 import { expectCoverage } from '../support/coverage';
+import { createSeededStream } from '../support/seededStream';
 
 const truth = {
   inertia: 0.42,

@@ -1,8 +1,8 @@
 import FFT from 'fft.js';
 import { describe, expect, it } from 'vitest';
 import { identifyStillSensor } from '../../src/core/bench/identify/stillSensor';
-import { createSeededStream } from '../../src/core/bench/statistics';
 import { expectCoverage } from '../support/coverage';
+import { createSeededStream } from '../support/seededStream';
 
 /**
  * White, flicker and random-walk noise in the time domain. Flicker by fractional differencing of order one half

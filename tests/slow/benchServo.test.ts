@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { identifyServoStep, identifyServoSweep, type ServoLog } from '../../src/core/bench/identify/servo';
-import { createSeededStream } from '../../src/core/bench/statistics';
 import { expectCoverage } from '../support/coverage';
+import { createSeededStream } from '../support/seededStream';
 
 interface Truth {
   readonly delay: number;

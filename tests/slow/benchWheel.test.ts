@@ -2,8 +2,8 @@ import { describe, expect, it } from 'vitest';
 import { identifyCoastDown } from '../../src/core/bench/identify/coastDown';
 import { identifyPendulum } from '../../src/core/bench/identify/pendulum';
 import { identifySpinUp } from '../../src/core/bench/identify/spinUp';
-import { createSeededStream } from '../../src/core/bench/statistics';
 import { expectCoverage } from '../support/coverage';
+import { createSeededStream } from '../support/seededStream';
 
 /** Heun's method at a small step: not the integrator under test. */
 function integrate(

@@ -1,16 +1,12 @@
 import { describe, expect, it } from 'vitest';
 import {
   allanDeviation,
-  FLICKER_FLOOR,
-  integratedWhite,
   modifiedAllanDeviation,
   overlappingAllanDeviation,
-  walkPerRootHour,
-  whiteDeviation,
 } from '../../../src/core/bench/identify/allan';
 import { identifyStillSensor } from '../../../src/core/bench/identify/stillSensor';
-import { createSeededStream } from '../../../src/core/bench/statistics';
 import { expectClose } from '../../support/closeTo';
+import { createSeededStream } from '../../support/seededStream';
 
 describe('Allan deviations', () => {
   it('of the nine-point set (NIST SP 1065, table 30, Riley 2008)', () => {
@@ -19,12 +15,6 @@ describe('Allan deviations', () => {
     expectClose(of(allanDeviation), [91.22945, 115.8082], { rel: 1e-6 }, 'original'); // measured 3e-7
     expectClose(of(overlappingAllanDeviation), [91.22945, 85.95287], { rel: 1e-6 }, 'overlapping');
     expectClose(of(modifiedAllanDeviation), [91.22945, 74.78849], { rel: 1e-6 }, 'modified');
-  });
-  it('conversions of noise figures (IEEE Std 952 annex C, from memory)', () => {
-    expectClose(walkPerRootHour(0.01), 0.6, { rel: 1e-8 });
-    expectClose(whiteDeviation(0.01, 100), 0.001, { rel: 1e-8 });
-    expectClose(FLICKER_FLOOR, 0.664282468, { rel: 1e-8 });
-    expectClose(integratedWhite(0.01, 60), 0.0774596669, { rel: 1e-8 });
   });
 });
 

@@ -1,11 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { balanceByFourRuns } from '../../../src/core/bench/balance/fourRun';
-import {
-  compareGrades,
-  findGrade,
-  gradeOfUnbalance,
-  permissibleUnbalance,
-} from '../../../src/core/bench/balance/grade';
+import { compareGrades, findGrade, gradeOfUnbalance } from '../../../src/core/bench/balance/grade';
 import { splitOverHoles } from '../../../src/core/bench/balance/holeSplit';
 import { balanceByInfluence } from '../../../src/core/bench/balance/influence';
 import { findMarks, trackOrder } from '../../../src/core/bench/balance/orderTracking';
@@ -18,8 +13,9 @@ import {
   phasor,
   sizeOf,
 } from '../../../src/core/bench/balance/phasor';
-import { createSeededStream } from '../../../src/core/bench/statistics';
+import { permissibleUnbalance } from '../../../src/core/physics';
 import { expectClose } from '../../support/closeTo';
+import { createSeededStream } from '../../support/seededStream';
 
 const deg = Math.PI / 180;
 const polar = (size: number, degrees: number): Phasor => phasor(size, degrees * deg);
@@ -142,23 +138,20 @@ describe('four runs, amplitude only', () => {
 });
 
 describe('balance grade', () => {
-  it('G 6.3 at 3000 rpm allows 20 um of eccentricity (ISO 21940-11 figure 2, read off)', () => {
-    expectClose(permissibleUnbalance(6.3, 1, 3000 * (Math.PI / 30)), 20e-6, { rel: 5e-3 }); // 20.05 um
+  it('G 6.3 at 3000 rpm is 20 um of eccentricity (ISO 21940-11 figure 2, read off)', () => {
+    expectClose(gradeOfUnbalance(20e-6, 1, 3000 * (Math.PI / 30)), 6.3, { rel: 5e-3 }); // 6.283
   });
-  it('6.015 G W / N ounce inches (hand formula of the trade, from memory of a maker of balancing machines)', () => {
+  it('6.015 G W / N ounce inches (hand formula of the trade, from memory)', () => {
     const ounceInch = 0.028349523125 * 0.0254;
-    expectClose(
-      permissibleUnbalance(2.5, 1000 * 0.45359237, 3600 * (Math.PI / 30)) / ounceInch,
-      (6.015 * 2.5 * 1000) / 3600,
-      { rel: 5e-4 },
-    );
+    const unbalance = ((6.015 * 2.5 * 1000) / 3600) * ounceInch;
+    expectClose(gradeOfUnbalance(unbalance, 1000 * 0.45359237, 3600 * (Math.PI / 30)), 2.5, { rel: 5e-4 });
   });
   it('grades before and after', () => {
     const speed = 8000 * (Math.PI / 30);
     const change = compareGrades(0.5e-3, 0.02e-3, 0.06, 0.5, speed);
     expectClose([change.before, change.after], [50.2655, 2.01062], { rel: 1e-5 });
-    expect([change.gradeBefore, change.gradeAfter]).toEqual([100, 2.5]);
-    expectClose(gradeOfUnbalance(permissibleUnbalance(6.3, 0.5, speed), 0.5, speed), 6.3, { rel: 1e-12 });
+    expect([change.gradeBefore, change.gradeAfter]).toEqual([undefined, 2.5]);
+    expectClose(gradeOfUnbalance(permissibleUnbalance(6.3, speed, 0.5), 0.5, speed), 6.3, { rel: 1e-12 });
     expect([findGrade(6.3), findGrade(6.31), findGrade(5000)]).toEqual([6.3, 16, undefined]);
   });
 });

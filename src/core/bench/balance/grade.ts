@@ -1,22 +1,12 @@
-/** Balance grades of ISO 21940-11: the product of eccentricity and speed, mm/s. */
-export const BALANCE_GRADES: readonly number[] = [0.4, 1, 2.5, 6.3, 16, 40, 100, 250, 630, 1600, 4000];
+import { BALANCE_GRADES } from '../../physics';
 
-/**
- * Permissible residual unbalance, kg*m, of a rotor at a grade: U = G m / omega (e_per * omega = G).
- *
- * @param grade  mm/s, as the grades are named; @param mass kg; @param speed rad/s
- * Source: ISO 21940-11 section 6.2.
- */
-export const permissibleUnbalance = (grade: number, mass: number, speed: number): number =>
-  (1e-3 * grade * mass) / speed;
-
-/** Grade, mm/s, that a rotor with a residual unbalance (kg*m) has at a speed (rad/s). */
+/** Grade, mm/s, that a rotor with a residual unbalance (kg*m) has at a speed (rad/s). Source: ISO 21940-11:2016. */
 export const gradeOfUnbalance = (unbalance: number, mass: number, speed: number): number =>
   (1e3 * unbalance * speed) / mass;
 
-/** Smallest named grade that a value (mm/s) meets; undefined when it meets none. */
+/** Smallest grade in common use that a value (mm/s) meets; undefined when it meets none. */
 export const findGrade = (value: number): number | undefined =>
-  BALANCE_GRADES.find((g) => value <= g * (1 + 1e-12));
+  BALANCE_GRADES.find(({ grade }) => value <= grade * (1 + 1e-12))?.grade;
 
 export interface GradeChange {
   /** kg*m. */

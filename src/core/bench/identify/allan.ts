@@ -113,15 +113,3 @@ export function computeAllanCurve(
   }
   return curve;
 }
-
-/** Angle (or speed) random walk per root hour from a noise density per root hertz: 60 N (IEEE Std 952, annex C). */
-export const walkPerRootHour = (density: number): number => 60 * density;
-
-/** Allan deviation of white noise of density N at tau: N / sqrt(tau) (IEEE Std 952, annex C). */
-export const whiteDeviation = (density: number, tau: number): number => density / Math.sqrt(tau);
-
-/** Height of the flat part of the Allan curve over the bias instability: sqrt(2 ln 2 / pi) (IEEE Std 952, annex C). */
-export const FLICKER_FLOOR = Math.sqrt((2 * Math.LN2) / Math.PI);
-
-/** Standard deviation of the angle that white rate noise of density N has integrated to after t: N sqrt(t). */
-export const integratedWhite = (density: number, t: number): number => density * Math.sqrt(t);

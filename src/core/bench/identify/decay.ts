@@ -1,7 +1,7 @@
 import FFT from 'fft.js';
 import { type Fit, type FitOutcome, fitLeastSquares } from '../leastSquares';
 import { averageBlocks, dropMissing, resampleEvenly, type Samples } from '../resampling';
-import { differenceNoise, median } from '../statistics';
+import { fisherTail, median } from '../statistics';
 import {
   asGiven,
   type Estimate,
@@ -82,12 +82,21 @@ export function identifyDecay(samples: Samples, options: DecayOptions = {}): Ide
   if (full.kind !== 'fitted') return refuse(explain(full));
   const fit = full.fit;
   const swing = Math.max(...y) - Math.min(...y);
-  if (!(fit.residualSpread < 0.25 * swing) || !(Math.abs(fit.values[0]) > 0)) {
+  if (!standsOut(y, fit)) return refuse('The log shows no swing: what there is cannot be told from noise.');
+  if (!(fit.residualSpread < 0.25 * swing)) {
     return refuse(
       `The log is no free swing: ${show((100 * fit.residualSpread) / swing, 2)} % of its range is left unexplained.`,
     );
   }
   return conclude(shape, time, y, fit, free.kind === 'fitted' ? free.fit : undefined, options);
+}
+
+/** F test of the swing against a level: at 1e-9, since the best of many frequencies was picked. */
+function standsOut(y: Float64Array, fit: Fit): boolean {
+  const mean = y.reduce((a, v) => a + v, 0) / y.length;
+  const level = y.reduce((a, v) => a + (v - mean) ** 2, 0);
+  const freedom = Math.max(1, fit.degreesOfFreedom / fit.correlation);
+  return fisherTail(((level / fit.sumOfSquares - 1) * freedom) / 6, 6, freedom) < 1e-9;
 }
 
 function explain(outcome: FitOutcome): string {
@@ -269,7 +278,7 @@ function guessSwing(time: Float64Array, y: Float64Array, shape: SwingShape): Flo
   const middle = median(even.subarray(size >> 1));
   const mean = even.reduce((s, v) => s + v, 0) / size;
   const swing = Math.max(...y) - Math.min(...y);
-  if (!(swing > 4 * differenceNoise(y)) || !(swing > 0)) return undefined;
+  if (!(swing > 0)) return undefined;
   const fft = new FFT(2 * size);
   const padded = new Float64Array(2 * size);
   for (let i = 0; i < size; i++)

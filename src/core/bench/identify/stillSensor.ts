@@ -1,5 +1,6 @@
+import { convertAngleWalk, FLICKER_FLOOR } from '../../control';
 import { median, robustSpread } from '../statistics';
-import { type AllanPoint, computeAllanCurve, FLICKER_FLOOR, type NoiseKind, walkPerRootHour } from './allan';
+import { type AllanPoint, computeAllanCurve, type NoiseKind } from './allan';
 import { fitNoise, gatherSpectrum, profileInterval } from './noiseSpectrum';
 import { type Estimate, type Identified, type Patch, patchOf, type Refused, refuse, show } from './result';
 
@@ -90,7 +91,7 @@ export function identifyStillSensor(
   });
   estimates.push(
     scaled('one-sided noise density', densityUnit, Math.SQRT2),
-    scaled('walk per root hour', unit === 'rad/s' ? 'rad/√h' : `${unit}·s/√h`, walkPerRootHour(1)),
+    scaled('walk per root hour', unit === 'rad/s' ? 'rad/√h' : `${unit}·s/√h`, convertAngleWalk(1)),
   );
   const [n2, b2, k2] = fit.variances;
   const kindAt = (tau: number): NoiseKind => {
