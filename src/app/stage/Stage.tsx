@@ -74,7 +74,7 @@ export function Stage() {
         camera={{ fov: FIELD_OF_VIEW, position: [3, 2, 3] }}
         events={stageEvents}
         onCreated={onCreated}
-        onPointerMissed={clearSelection}
+        onPointerMissed={(event) => event.type === 'click' && clearSelection()}
       >
         <Scene palette={palette} ask={ask} />
       </Canvas>
@@ -174,10 +174,12 @@ function Summary({ id }: { readonly id: string }) {
       setWords(pose + chosen);
     };
     const wait = (): void => {
+      if (stream.isPlaying) return;
       clearTimeout(timer);
-      if (!stream.isPlaying) timer = setTimeout(tell, SETTLED);
+      timer = setTimeout(tell, SETTLED);
     };
-    wait();
+    // Told once even while it plays, so that there is always a description.
+    timer = setTimeout(tell, SETTLED);
     const leave = [stream.onFrame(wait), stream.onTransport(wait)];
     return () => {
       clearTimeout(timer);

@@ -1,8 +1,8 @@
 import { OrbitControls } from '@react-three/drei';
 import { useFrame, useThree } from '@react-three/fiber';
-import { useCallback, useEffect, useRef } from 'react';
+import { useCallback, useEffect, useMemo, useRef } from 'react';
 import { type PerspectiveCamera, Vector3 } from 'three';
-import { useSession } from '../state/session';
+import { type StageInsets, useSession } from '../state/session';
 import { type Box, boxCentre, type Point } from './bodyPlaces';
 import { isDragging } from './dragging';
 import { eyeDirection, frameDistance, freeArea, type View } from './framing';
@@ -27,6 +27,15 @@ const LEASH = 0.16;
 /** A rig that has grown or shrunk by more than this is framed anew. */
 const RESIZE = 1.7;
 
+/** CSS pixels that the caption takes; small stages have none (stage.css). */
+const CAPTION_HEIGHT = 34;
+
+const withCaption = (
+  insets: StageInsets,
+  { width, height }: { width: number; height: number },
+): StageInsets =>
+  width < 420 || height < 320 ? insets : { ...insets, bottom: insets.bottom + CAPTION_HEIGHT };
+
 export interface ViewAsk {
   readonly view: View | 'frame';
   /** Counts the asks, so that the same button can be pressed twice. */
@@ -47,7 +56,8 @@ export function Viewpoint({ ask }: { readonly ask: ViewAsk }) {
   const controls = useThree((state) => state.controls) as unknown as Controls | null;
   const viewport = useThree((state) => state.size);
   const invalidate = useThree((state) => state.invalidate);
-  const insets = useSession((state) => state.stageInsets);
+  const covered = useSession((state) => state.stageInsets);
+  const insets = useMemo(() => withCaption(covered, viewport), [covered, viewport]);
   const isTouched = useRef(false);
   const pressed = useRef(new Vector3());
   const framedSize = useRef(0);
