@@ -1,4 +1,5 @@
 import { useEffect, useState } from 'react';
+import { saveToBrowser } from './files/keeping';
 import { Header } from './Header';
 import { LedgerLadder, LedgerLineFolded } from './ledger/LedgerLadder';
 import { Ribbon } from './ribbon/Ribbon';
@@ -13,7 +14,7 @@ import { findStation } from './stations';
 /** The page: stations on top, the sheet at the left, the ledger at the right, the ribbon below, the stage between. */
 export function App() {
   const isNarrow = useIsNarrow();
-  useUndoKeys();
+  useKeys();
   useStageInsets(isNarrow);
   return (
     <div className="app">
@@ -64,14 +65,17 @@ function NarrowLedger() {
   );
 }
 
-/** Ctrl or Cmd with Z and Y, unless a text is being typed. */
-function useUndoKeys(): void {
+/** Ctrl or Cmd with S saves; with Z and Y it undoes and redoes, unless a text is being typed. */
+function useKeys(): void {
   useEffect(() => {
     const onKeyDown = (event: KeyboardEvent): void => {
-      if (!(event.ctrlKey || event.metaKey) || event.target instanceof HTMLInputElement) return;
+      if (!(event.ctrlKey || event.metaKey)) return;
       const { undo, redo } = useDocument.getState();
       const key = event.key.toLowerCase();
-      if (key === 'z' && !event.shiftKey) undo();
+      const isTyping = event.target instanceof HTMLInputElement;
+      if (key === 's') void saveToBrowser();
+      else if (isTyping) return;
+      else if (key === 'z' && !event.shiftKey) undo();
       else if (key === 'y' || key === 'z') redo();
       else return;
       event.preventDefault();

@@ -23,7 +23,8 @@ const rememberLast = (name: string): void => {
 
 /** Keeps the rig in this browser under its name. */
 export async function saveToBrowser(): Promise<void> {
-  const { rig } = useDocument.getState();
+  const { rig, isReadOnly } = useDocument.getState();
+  if (isReadOnly) return;
   const saved = await rigStore.save(rig, Date.now());
   if (saved.kind === 'failed') {
     show({

@@ -16,12 +16,12 @@ export function PlanState() {
   switch (plan.kind) {
     case 'planned':
       return (
-        <div className="plan-state" data-state="holds">
+        <div className="plan-state" data-state={fall ? 'fails' : 'holds'}>
           <h3>Planned</h3>
           {fall || <p>The preview holds to the end.</p>}
           <p className="aside">
-            {plan.course.time.length} instants, {plan.iterations} steps of the solver,{' '}
-            {(plan.solveSeconds * 1000).toFixed(1)} ms.
+            {plan.course.time.length} instants · {plan.iterations} solver steps ·{' '}
+            {(plan.solveSeconds * 1000).toFixed(0)} ms
           </p>
           <button type="button" className="wide" onClick={exportSchedule}>
             Tilt schedule as CSV
