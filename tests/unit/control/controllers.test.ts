@@ -26,18 +26,18 @@ const drive = (
 describe('laws', () => {
   it('PID to tilt: P, I and D each by itself', () => {
     const pid = { kind: 'pidTilt', kp: 0, ki: 0, kd: 0 } as const;
-    expectClose(drive({ ...pid, kp: 2 }, [0.1, 0.2]), [0.2, 0.4], { rel: 1e-14 });
-    expectClose(drive({ ...pid, ki: 10 }, [0.1, 0.2]), [0.01, 0.03], { rel: 1e-14 });
-    expectClose(drive({ ...pid, kd: 0.5 }, [0, 0], [0.2, -0.2]), [0.1, -0.1], { rel: 1e-14 });
+    expectClose(drive({ ...pid, kp: 2 }, [0.1, 0.2]), [0.2, 0.4], { rel: 1e-14 }); // measured 0
+    expectClose(drive({ ...pid, ki: 10 }, [0.1, 0.2]), [0.01, 0.03], { rel: 1e-14 }); // measured 0
+    expectClose(drive({ ...pid, kd: 0.5 }, [0, 0], [0.2, -0.2]), [0.1, -0.1], { rel: 1e-14 }); // measured 0
   });
   it('PID to tilt rate gathers its output; feedback adds re-centring, smoothing and trim', () => {
     expectClose(drive({ kind: 'pidTiltRate', kp: 2, ki: 0, kd: 0 }, [0.1, 0.1]), [0.002, 0.004], {
       rel: 1e-13,
-    });
+    }); // measured 0
     const f = { kind: 'feedback', lean: 0, leanRate: 0, tilt: 0, tiltRate: 0, trim: 0 } as const;
-    expectClose(drive({ ...f, tilt: -5 }, [0, 0], [], 0.2), [0.19, 0.1805], { rel: 1e-13 });
-    expectClose(drive({ ...f, lean: 2, tiltRate: 0.5 }, [0.1, 0]), [0.002, 0.003], { rel: 1e-13 });
-    expectClose(drive({ ...f, trim: 1 }, [0, 0], [], 0.2), [0.2, 0.2 + 0.2 * DT * DT], { rel: 1e-13 });
+    expectClose(drive({ ...f, tilt: -5 }, [0, 0], [], 0.2), [0.19, 0.1805], { rel: 1e-13 }); // measured 0
+    expectClose(drive({ ...f, lean: 2, tiltRate: 0.5 }, [0.1, 0]), [0.002, 0.003], { rel: 1e-13 }); // measured 0
+    expectClose(drive({ ...f, trim: 1 }, [0, 0], [], 0.2), [0.2, 0.2 + 0.2 * DT * DT], { rel: 1e-13 }); // measured 0
   });
   it('stop at the tilt limits and come off them at once, with nothing wound up', () => {
     for (const c of [
@@ -60,12 +60,12 @@ describe('laws', () => {
     };
     const gains = { lean: 0, leanRate: 0, tilt: 0, tiltRate: 0, trim: 0 };
     const alone = drive({ kind: 'planned', plan, gains }, new Array(10).fill(0.5));
-    expectClose(alone, [0, 0.05, 0.1, 0.15, 0.2, 0.15, 0.1, 0.05, 0, 0.05], { abs: 1e-14 });
+    expectClose(alone, [0, 0.05, 0.1, 0.15, 0.2, 0.15, 0.1, 0.05, 0, 0.05], { abs: 1e-14 }); // measured 4e-17
     const onPlan = [0.01, 0.015, 0.02, 0.025, 0.03];
     const held = drive({ kind: 'planned', plan, gains: { ...gains, lean: 10 } }, onPlan);
-    expectClose(held, [0, 0.05, 0.1, 0.15, 0.2], { abs: 1e-14 });
+    expectClose(held, [0, 0.05, 0.1, 0.15, 0.2], { abs: 1e-14 }); // measured 3e-17
     const off = drive({ kind: 'planned', plan, gains: { ...gains, lean: 10 } }, [0.11]);
-    expectClose(off, [10 * 0.1 * DT], { rel: 1e-12 });
+    expectClose(off, [10 * 0.1 * DT], { rel: 1e-12 }); // measured 0
     const scheduled = drive(
       {
         kind: 'planned',
@@ -75,7 +75,7 @@ describe('laws', () => {
       },
       [0.11],
     );
-    expectClose(scheduled, [3 * 10 * 0.1 * DT], { rel: 1e-12 });
+    expectClose(scheduled, [3 * 10 * 0.1 * DT], { rel: 1e-12 }); // measured 0
   });
   it('keeps plan plus feedback within the limits', () => {
     const plan = {
@@ -87,7 +87,7 @@ describe('laws', () => {
     };
     const gains = { lean: 100, leanRate: 0, tilt: 0, tiltRate: 0, trim: 0 };
     const held = drive({ kind: 'planned', plan, gains }, new Array(100).fill(0.3));
-    expectClose(Math.max(...held), 0.5, { rel: 1e-12 });
+    expectClose(Math.max(...held), 0.5, { rel: 1e-12 }); // measured 0
   });
 });
 
@@ -132,7 +132,7 @@ describe('a rig’s control, servo and sensing entries', () => {
     const body = { inertia: 0.3, stiffness: 7, damping: 0, momentum: 0.5, lineHeight: 0.1, gravity: 9.81 };
     const plant = assembleTiltPlant(body, BENCH_SERVO, BENCH_SENSING);
     /* 6 ms servo, half of a 4 ms frame, 2 ms loop */
-    expectClose([plant.delay, plant.servoLag, plant.sensorHeight], [0.01, 0.018, 0.28], { rel: 1e-12 });
-    expectClose(assembleWheelPlant(body, 0.003, BENCH_SENSING).delay, 0.002, { rel: 1e-12 });
+    expectClose([plant.delay, plant.servoLag, plant.sensorHeight], [0.01, 0.018, 0.28], { rel: 1e-12 }); // measured 0
+    expectClose(assembleWheelPlant(body, 0.003, BENCH_SENSING).delay, 0.002, { rel: 1e-12 }); // measured 0
   });
 });

@@ -42,7 +42,7 @@ describe('seeded generator', () => {
       seedRandom(a, 9, run + 1, 0);
       sum += x * drawNormal(a);
     }
-    expect(Math.abs(sum / Math.sqrt(n))).toBeLessThan(3.5); // measured 0.3 to 1.5 over seeds; 3.5 sigma
+    expect(Math.abs(sum / Math.sqrt(n))).toBeLessThan(3.5); // 3.5 standard deviations of the sum
   });
 
   it('draws normals with the moments and tail counts of the normal law', () => {
