@@ -1,4 +1,5 @@
 /** A drag of a handle from press to release: one step of undo, and the number beside the pointer. */
+import { invalidate } from '@react-three/fiber';
 import { type Matrix4, type PerspectiveCamera, Vector2, Vector3 } from 'three';
 import { formatQuantity } from '../../core/units';
 import { useDocument } from '../state/document';
@@ -84,6 +85,8 @@ export function beginDrag(handle: Handle, press: PointerEvent, ends: DragEnds): 
     if (isKept) useDocument.getState().commit();
     else useDocument.getState().cancel();
     tell(undefined);
+    // The body goes where the new motion has it.
+    invalidate();
   };
   const release = (event: PointerEvent): void => {
     if (event.pointerId === press.pointerId) finish(true);

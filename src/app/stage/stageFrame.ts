@@ -3,6 +3,7 @@ import type { Rig } from '../../core/rig';
 import { type Evaluated, stream } from '../state/stream';
 import { motionScales, type QuantityScales } from './arrowScale';
 import { type Box, boxDiagonal, rigBox } from './bodyPlaces';
+import { isDragging } from './dragging';
 import { createInstant, type Instant, leanOf, readInstant } from './motionInstant';
 import type { Palette } from './palette';
 import { restInstant } from './restInstant';
@@ -24,6 +25,21 @@ const fits = (rig: Rig, shown: Evaluated): boolean =>
   shown.motion.gyros === rig.array.gyros.length &&
   shown.motion.legs === (rig.body.kind === 'legged' ? rig.body.legs : 0);
 
+/** Where body and feet stood when nothing was being dragged. */
+const held = { pose: new Float64Array(7), feet: new Float64Array(0) };
+
+/** What is dragged must not walk, or fall, away from under the hand: while it is, body and feet stay put. */
+function holdWhileDragging({ pose, feet }: Instant): void {
+  if (held.feet.length !== feet.length) held.feet = new Float64Array(feet.length);
+  else if (isDragging()) {
+    pose.set(held.pose);
+    feet.set(held.feet);
+    return;
+  }
+  held.pose.set(pose);
+  held.feet.set(feet);
+}
+
 /** A reader of the instants of one motion for one rig; at rest while there is no motion that fits the rig. */
 export function createStageFrame(rig: Rig, shown: Evaluated | undefined): StageFrame {
   const rest = restInstant(rig);
@@ -38,6 +54,7 @@ export function createStageFrame(rig: Rig, shown: Evaluated | undefined): StageF
     hasFallen: false,
     read: (): void => {
       readInstant(motion, stream.seconds, instant);
+      holdWhileDragging(instant);
       frame.hasFallen =
         leanOf(instant.pose) > FALLEN || (outcome.kind === 'falls' && stream.seconds >= outcome.at);
     },
