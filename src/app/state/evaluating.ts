@@ -14,6 +14,9 @@ export const EDIT_TO_REDRAW = 'edit to redrawn plan';
 /** ms a rig must have been left alone before cures are looked for: a drag would only throw them away. */
 const REST_BEFORE_CURES = 250;
 
+/** Measures kept for whoever asks; a long day of edits must not fill the memory with them. */
+const MOST_MEASURES = 500;
+
 interface Question {
   readonly rig: Rig;
   readonly switches: Switches;
@@ -117,7 +120,9 @@ function createCureSearch(evaluator: Evaluator) {
 /** The redraw is done at the end of the frame in which the evaluation came. */
 function measureRedraw(start: number): void {
   requestAnimationFrame(() => {
-    performance.clearMeasures(EDIT_TO_REDRAW);
+    if (performance.getEntriesByName(EDIT_TO_REDRAW).length >= MOST_MEASURES) {
+      performance.clearMeasures(EDIT_TO_REDRAW);
+    }
     performance.measure(EDIT_TO_REDRAW, { start, end: performance.now() });
   });
 }
