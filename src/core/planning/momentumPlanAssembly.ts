@@ -87,12 +87,14 @@ function writeDynamics(
 ): void {
   const { sizes, dynamics, drift } = w.problem;
   const { width, states, controls } = sizes;
-  const row = (state: number) => (k * states + state - controls) * width;
+  const first = (k * states - controls) * width;
+  const momentumRow = first + layout.momentum * width;
+  const previousRow = first + layout.previous * width;
   const gain = (layout.torqueScale * problem.step) / layout.momentumScale;
-  dynamics[row(layout.momentum) + layout.momentum] = 1;
-  dynamics[row(layout.momentum) + layout.control] = gain * control.slope;
+  dynamics[momentumRow + layout.momentum] = 1;
+  dynamics[momentumRow + layout.control] = gain * control.slope;
   drift[k * states + layout.momentum - controls] = gain * control.constant;
-  dynamics[row(layout.previous) + layout.control] = control.slope;
+  dynamics[previousRow + layout.control] = control.slope;
   drift[k * states + layout.previous - controls] = control.constant;
   if (!lean) return;
   const { demand } = problem.axes[i].support as LeanSupport;
@@ -100,7 +102,7 @@ function writeDynamics(
   const d1 = demand[(k + 1) % demand.length];
   const scales = [layout.leanScale, layout.leanRateScale];
   for (let a = 0; a < 2; a++) {
-    const at = row(layout.lean + a);
+    const at = first + (layout.lean + a) * width;
     for (let b = 0; b < 2; b++) {
       dynamics[at + layout.lean + b] = (lean.state[a * 2 + b] * scales[b]) / scales[a];
     }

@@ -103,6 +103,8 @@ function checkInterval(
   const { step } = problem;
   const e0 = schedule.momentum[k];
   const rate = (schedule.momentum[k + 1] - e0) / step;
+  const most = array.momentum * Math.sin(array.tiltMax);
+  const least = array.momentum * Math.sin(-array.tiltMin);
   let lean = schedule.lean[k];
   let leanRate = schedule.leanRate[k];
   for (let j = 0; j <= refine; j++) {
@@ -110,12 +112,13 @@ function checkInterval(
     const time = (k + share) * step;
     const e = e0 + rate * share * step;
     if (array.kind === 'gimballed') {
-      const tilt = Math.asin(Math.max(-1, Math.min(1, e / array.momentum)));
-      const tiltRate = rate / (array.momentum * Math.cos(tilt));
-      const bound = array.momentum * Math.sin(e >= 0 ? array.tiltMax : -array.tiltMin);
-      note(findings, momentumLimit, i, time, Math.abs(e), bound);
+      const sine = e / array.momentum;
+      // momentum beyond 90 degrees makes the rate NaN, which is within no limit
+      const tiltRate = rate / (array.momentum * Math.sqrt(1 - sine * sine));
+      note(findings, momentumLimit, i, time, Math.abs(e), e >= 0 ? most : least);
       note(findings, rateLimit, i, time, Math.abs(tiltRate), array.tiltRate);
       if (array.servo) {
+        const tilt = Math.asin(sine);
         const body = mix(bodyRate, k, share) + leanRate;
         // a change of tilt rate at a node takes from half a step before it to half a step after
         const node = 2 * j <= refine ? k : k + 1;

@@ -170,7 +170,7 @@ describe('the solver', () => {
       createSolverWork(program.sizes),
     );
     expect(outcome.kind).toBe('gave-up');
-    expect(outcome.iterations).toBeLessThanOrEqual(4);
+    expect(outcome.iterations).toBeLessThanOrEqual(6); // three runs of two
     if (outcome.kind === 'gave-up') expect(outcome.residuals.complementarity).toBeGreaterThan(1e-6);
   });
 

@@ -24,7 +24,7 @@ const mostRest = 0.01;
 const leastRest = 3e-3;
 /** Stationarity above this share of its tolerance late in a run is rounding, worth a round of refinement. */
 const lossShare = 0.05;
-/** From this gap on, relative to the objective, every step is refined: the barrier's weights are at their widest. */
+/** From this gap on, relative to the objective, steps may be refined: a careful run refines every one. */
 const lateGap = 1e-6;
 /** Steps shorter than this may be the sign of a contradiction. */
 const shortStep = 0.9;
@@ -207,8 +207,8 @@ function advance(
     fillCorrection(work);
     solveNewton(problem, work, (rest * rest * rest * gap) / sizes.degree, true);
     if (isLossy) refineStep(problem, work);
-    const mean = gap / sizes.degree;
-    step = Math.min(1, (1 - Math.max(leastRest, Math.min(mostRest, mean))) * longestStep(work));
+    const untaken = options.careful ? mostRest : Math.max(leastRest, Math.min(mostRest, gap / sizes.degree));
+    step = Math.min(1, (1 - untaken) * longestStep(work));
     moveCones(work, step);
   }
   const { stepZ, stepDynamics, stepBorder } = work;
@@ -265,7 +265,7 @@ export function runInteriorPoint(
       isKept = true;
     }
     const isLate = gap <= lateGap * (1 + Math.abs(objective));
-    const isLossy = primal < 1e-3 && (isLate || dual > lossShare * options.tolerance);
+    const isLossy = isLate && primal < 1e-3 && (options.careful || dual > lossShare * options.tolerance);
     step = advance(problem, options, work, gap, isLossy);
     if (!(step > leastStep)) return { end: 'stalled', iterations: iteration, certificate: null };
   }

@@ -4,9 +4,10 @@ import type { StagePoint, StageProblem } from './stageProblem';
 // Written apart from the solver's own products on purpose: it trusts nothing the solver has computed but
 // the point and its multipliers, and recomputes the slack from the limits.
 
-const matrixTimes = (m: Float64Array, at: number, columns: number, x: Float64Array): number => {
+/** Row of a matrix at `at` times the part of x that starts at `from`. */
+const matrixTimes = (m: Float64Array, at: number, columns: number, x: Float64Array, from: number): number => {
   let sum = 0;
-  for (let c = 0; c < columns; c++) sum += m[at + c] * x[c];
+  for (let c = 0; c < columns; c++) sum += m[at + c] * x[from + c];
   return sum;
 };
 
@@ -34,19 +35,19 @@ function checkRows(
   problem: StageProblem,
   point: StagePoint,
   k: number,
-  z: Float64Array,
-  w: Float64Array,
+  slack: Float64Array,
   out: RowCheck,
 ): void {
   const { sizes } = problem;
+  const { width, shared } = sizes;
   const first = sizes.rowStart[k];
-  const slack = new Float64Array(sizes.rowStart[k + 1] - first);
-  for (let i = 0; i < slack.length; i++) {
+  const count = sizes.rowStart[k + 1] - first;
+  for (let i = 0; i < count; i++) {
     const r = first + i;
     slack[i] =
       problem.bound[r] -
-      matrixTimes(problem.rows, r * sizes.width, sizes.width, z) -
-      matrixTimes(problem.rowsShared, r * sizes.shared, sizes.shared, w);
+      matrixTimes(problem.rows, r * width, width, point.z, k * width) -
+      matrixTimes(problem.rowsShared, r * shared, shared, point.border, sizes.boundaryRows);
     out.complementarity += slack[i] * point.dual[r];
   }
   for (let i = 0; i < sizes.linearRows[k]; i++) {
@@ -75,7 +76,10 @@ export function checkOptimality(problem: StageProblem, point: StagePoint, object
   const { sizes } = problem;
   const { stages, states, controls, width, shared, boundaryRows } = sizes;
   const rows: RowCheck = { limits: 0, dualCone: 0, complementarity: 0 };
-  const w = point.border.subarray(boundaryRows);
+  let mostRows = 0;
+  for (let k = 0; k <= stages; k++) mostRows = Math.max(mostRows, sizes.rowStart[k + 1] - sizes.rowStart[k]);
+  const slack = new Float64Array(mostRows);
+  const gradient = new Float64Array(width);
   const scale = 1 + Math.max(largest(problem.gradient), largest(point.dynamicsDual), largest(point.dual));
   let equations = 0;
   let stationarity = 0;
@@ -84,12 +88,12 @@ export function checkOptimality(problem: StageProblem, point: StagePoint, object
     (_, j) => problem.sharedGradient[j] + problem.sharedHessian[j] * point.border[boundaryRows + j],
   );
   for (let k = 0; k <= stages; k++) {
-    const z = point.z.subarray(k * width, (k + 1) * width);
-    const gradient = problem.gradient.slice(k * width, (k + 1) * width);
+    const at = k * width;
     for (let a = 0; a < width; a++) {
-      gradient[a] += matrixTimes(problem.hessian, (k * width + a) * width, width, z);
+      gradient[a] =
+        problem.gradient[at + a] + matrixTimes(problem.hessian, (at + a) * width, width, point.z, at);
     }
-    checkRows(problem, point, k, z, w, rows);
+    checkRows(problem, point, k, slack, rows);
     for (let r = sizes.rowStart[k]; r < sizes.rowStart[k + 1]; r++) {
       for (let a = 0; a < width; a++) gradient[a] += problem.rows[r * width + a] * point.dual[r];
       for (let j = 0; j < shared; j++)
@@ -104,7 +108,7 @@ export function checkOptimality(problem: StageProblem, point: StagePoint, object
       }
       if (k === stages) continue;
       const row = (k * states + i) * width;
-      const reached = matrixTimes(problem.dynamics, row, width, z) + problem.drift[k * states + i];
+      const reached = matrixTimes(problem.dynamics, row, width, point.z, at) + problem.drift[k * states + i];
       equations = Math.max(equations, Math.abs(reached - point.z[(k + 1) * width + controls + i]));
       for (let a = 0; a < width; a++) {
         gradient[a] += problem.dynamics[row + a] * point.dynamicsDual[k * states + i];
@@ -115,12 +119,11 @@ export function checkOptimality(problem: StageProblem, point: StagePoint, object
     }
   }
   for (let j = 0; j < shared; j++) stationarity = Math.max(stationarity, Math.abs(sharedGradient[j]));
-  const first = point.z.subarray(controls, width);
-  const last = point.z.subarray(stages * width + controls);
+  const last = stages * width + controls;
   for (let b = 0; b < boundaryRows; b++) {
     const sum =
-      matrixTimes(problem.boundaryStart, b * states, states, first) +
-      matrixTimes(problem.boundaryEnd, b * states, states, last);
+      matrixTimes(problem.boundaryStart, b * states, states, point.z, controls) +
+      matrixTimes(problem.boundaryEnd, b * states, states, point.z, last);
     equations = Math.max(equations, Math.abs(sum - problem.boundaryValue[b]));
   }
   return {

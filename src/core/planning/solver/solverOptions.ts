@@ -13,6 +13,8 @@ export interface SolverOptions {
   readonly radius: number;
   /** added to the diagonal of the Newton system only; never part of the problem solved */
   readonly regularise: number;
+  /** refine every late step; a run that fails is always tried again so, from a cold start */
+  readonly careful: boolean;
   /** start from the point kept of the last solve with the same work space */
   readonly warm: boolean;
   /** mean complementarity at which that point is kept */
@@ -25,6 +27,7 @@ export const defaultSolverOptions: SolverOptions = Object.freeze({
   gapTolerance: 5e-9,
   radius: 100,
   regularise: 1e-10,
+  careful: false,
   warm: false,
   warmGap: 1e-3,
 });

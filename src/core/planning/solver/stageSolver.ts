@@ -45,14 +45,12 @@ export function solveStageProblem(
   if (run.certificate) return { kind: 'impossible', certificate: run.certificate, iterations };
   let outcome = claimSolved(problem, options, work, iterations);
   if (outcome.kind === 'solved') return outcome;
-  if (options.warm) {
-    // a kept point can be a poor start after a large change
-    run = runInteriorPoint(problem, { ...options, warm: false }, work);
-    iterations += run.iterations;
-    if (run.certificate) return { kind: 'impossible', certificate: run.certificate, iterations };
-    outcome = claimSolved(problem, options, work, iterations);
-    if (outcome.kind === 'solved') return outcome;
-  }
+  // a kept point can be a poor start after a large change, and rounding can spoil the last steps
+  run = runInteriorPoint(problem, { ...options, warm: false, careful: true }, work);
+  iterations += run.iterations;
+  if (run.certificate) return { kind: 'impossible', certificate: run.certificate, iterations };
+  outcome = claimSolved(problem, options, work, iterations);
+  if (outcome.kind === 'solved') return outcome;
   work.hasKept = false;
   const phase = seekCertificate(problem, options, work);
   iterations += phase.iterations;
