@@ -6,6 +6,7 @@
  */
 import { axialMomentum, placeSpinAxis } from './arrayLaw';
 import { solveBase } from './baseSolve';
+import { accelerateOnLine } from './fixedLine';
 import { addWaterWrench, floatHeight, placeBase, placePoseRate } from './footingMotion';
 import { gimbalFrictionTorque, wheelDragTorque } from './losses';
 import { gimbalIsDynamic, gimbalIsLocked, type StarModel } from './starModel';
@@ -382,7 +383,8 @@ export function starAcceleration(
 }
 
 /**
- * Rate of the whole state: pose rate, tilt rate, accelerations, in the state's own layout.
+ * Rate of the whole state: pose rate, tilt rate, accelerations, in the state's own layout. A base on a fixed line goes
+ * by the quick route, and `work.place` is then left alone.
  *
  * @param out  model.stateSize; may not alias an input
  *
@@ -395,8 +397,14 @@ export function starDerivative(
   effort: Float64Array,
   out: Float64Array,
 ): void {
-  const a = work.acceleration;
   const n = model.gimbals;
+  if (model.line !== null && !work.isMoving) {
+    out[0] = state[1 + n]!;
+    for (let i = 0; i < n; i++) out[1 + i] = state[2 + n + i]!;
+    accelerateOnLine(model, model.line, work.hingeForce, state, effort, out, 1 + n);
+    return;
+  }
+  const a = work.acceleration;
   starAcceleration(model, work, state, effort, a);
   placePoseRate(model, work.place, state, out);
   for (let i = 0; i < n; i++) out[model.tiltAt + i] = state[model.rateAt + i]!;

@@ -18,6 +18,7 @@
  * inertia about O is a trigonometric polynomial of second degree in its tilt, compiled once.
  */
 import { type ArrayModel, compileArray } from './arrayLaw';
+import { compileFixedLine, type FixedLineModel } from './fixedLine';
 import { compileFooting, type FootingModel, type StarFooting } from './footing';
 import { type GimbalFriction, noDrag, noFriction, type WheelDrag } from './losses';
 import {
@@ -133,6 +134,8 @@ export interface StarModel {
   /** 3n, in the order of WheelDrag. */
   readonly drag: Float64Array;
   readonly hasDrag: boolean;
+  /** Scalars of the quick route for a base on a fixed line; null otherwise. */
+  readonly line: FixedLineModel | null;
 }
 
 const bodyAboutOrigin = (body: RigidBody): number[] => [
@@ -246,10 +249,16 @@ export function compileStar(description: StarDescription): StarModel {
   const tiltAt = footing.poseSize;
   const baseSpeedAt = tiltAt + n;
   const rateAt = baseSpeedAt + footing.speeds;
+  const array = compileArray(gyros.map((g) => ({ ...g, axialInertia: g.wheel.axialInertia })));
+  const gravity_W = new Float64Array(description.gravity ?? standardGravity);
+  const line = compileFixedLine({ ...model, gimbals: n, array, gravity_W, base, restRig }, footing);
   return Object.freeze({
     description,
     gimbals: n,
     footing,
+    line,
+    array,
+    gravity_W,
     stateSize: rateAt + 2 * n,
     effortSize: 2 * n + 6,
     accelerationSize: footing.speeds + 2 * n,
@@ -257,8 +266,6 @@ export function compileStar(description: StarDescription): StarModel {
     baseSpeedAt,
     rateAt,
     wheelSpeedAt: rateAt + n,
-    array: compileArray(gyros.map((g) => ({ ...g, axialInertia: g.wheel.axialInertia }))),
-    gravity_W: new Float64Array(description.gravity ?? standardGravity),
     base,
     restRig,
     hasFriction: gyros.some((g) => g.friction !== undefined),

@@ -27,6 +27,8 @@ export interface StarWork {
   readonly right: Float64Array;
   readonly articulated: Float64Array;
   readonly acceleration: Float64Array;
+  /** Whether the base or the planted point has been set to move by prescription. */
+  isMoving: boolean;
 }
 
 /** The only place that allocates. One work space per caller. */
@@ -45,6 +47,7 @@ export function createStarWork(model: StarModel): StarWork {
     right: new Float64Array(6),
     articulated: new Float64Array(36),
     acceleration: new Float64Array(model.accelerationSize),
+    isMoving: false,
   };
   setBase(model, work, model.base);
   return work;
@@ -68,6 +71,7 @@ function setBase(model: StarModel, work: StarWork, about: ArrayLike<number>): vo
  * @param moving  28, see StarWork.base: about O, body components, SI. Mass must be constant.
  */
 export function setMovingBase(model: StarModel, work: StarWork, moving: ArrayLike<number>): void {
+  work.isMoving = true;
   setBase(model, work, moving);
   for (let k = 10; k < 28; k++) work.base[k] = moving[k]!;
 }
@@ -77,5 +81,6 @@ export function setMovingBase(model: StarModel, work: StarWork, moving: ArrayLik
  * motion of a body over planted feet enters here, the line of an edge footing moves with it.
  */
 export function setPlanted(work: StarWork, planted: ArrayLike<number>): void {
+  work.isMoving = true;
   for (let k = 0; k < 9; k++) work.place.planted[k] = planted[k]!;
 }
