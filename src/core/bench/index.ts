@@ -1,4 +1,5 @@
 export * from './alignment';
+export * from './balance/balanceSheet';
 export * from './balance/fourRun';
 export * from './balance/grade';
 export * from './balance/holeSplit';
@@ -15,6 +16,7 @@ export * from './identify/servo';
 export * from './identify/spinUp';
 export * from './identify/stillSensor';
 export * from './identify/toppling';
+export * from './identifyLog';
 export * from './leastSquares';
 export * from './link/commandQueue';
 export * from './link/lineAssembler';

@@ -1,7 +1,15 @@
 import type { Command } from '../command';
+import { balanceCommand } from './balance';
+import { identifyCommand } from './identify';
 import { planCommand } from './plan';
 import { spinCommand } from './spin';
 import { weighCommand } from './weigh';
 
 /** Every command, in the order of the job. A new one is a file of its own and a line here. */
-export const COMMANDS: readonly Command[] = [weighCommand, spinCommand, planCommand];
+export const COMMANDS: readonly Command[] = [
+  weighCommand,
+  spinCommand,
+  planCommand,
+  identifyCommand,
+  balanceCommand,
+];
