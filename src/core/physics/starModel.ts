@@ -52,7 +52,10 @@ export type StarDrive =
   | { readonly kind: 'free'; readonly stiffness: number; readonly restTilt: number; readonly damping: number }
   | { readonly kind: 'locked' };
 
-/** Whether a wheel's speed is held by its controller, left alone, or driven by a given motor torque. */
+/**
+ * Whether a wheel's speed is held by its controller, left alone, or driven by a given motor torque. Coasting and driven
+ * are one to the dynamics (the motor's entry of the effort acts on both); the word says which is meant.
+ */
 export type StarSpin = 'held' | 'coasting' | 'driven';
 
 export interface StarWheel {

@@ -20,7 +20,7 @@ export interface StarWork {
   readonly hingeForce: Float64Array;
   /** n: what is left to accelerate the hinge; later the tilt accelerations. */
   readonly hingeRest: Float64Array;
-  /** n: rate of each wheel's momentum along its spin axis, N*m; for held wheels filled after the solve. */
+  /** n: rate of each wheel's momentum along its spin axis, N*m; for held wheels filled after the solve. By starAcceleration only. */
   readonly momentumRate: Float64Array;
   /** 36 and 6: system left for the base, and its right side. */
   readonly matrix: Float64Array;
