@@ -1,3 +1,4 @@
+import { useFrame } from '@react-three/fiber';
 import { useMemo } from 'react';
 import { BoxGeometry, DoubleSide, Shape, ShapeGeometry, Vector2 } from 'three';
 import type { HullBody } from '../../core/rig';
@@ -6,6 +7,7 @@ import { Inked, noRaycast, useGeometry } from './Inked';
 import { useIsChosen } from './picking';
 import { segmentsGeometry, sweptSheet } from './shapes';
 import { useStage } from './stageFrame';
+import { meetWater } from './waterline';
 
 /** Ink along the hull: every knuckle of the section from end to end, and the section at both ends and between. */
 function hullLines(
@@ -68,8 +70,42 @@ export function HullModel({ body }: { readonly body: HullBody }) {
       <lineSegments geometry={lines} raycast={noRaycast} renderOrder={3}>
         <lineBasicMaterial color={isChosen ? palette.chosen : palette.ink} transparent opacity={0.6} />
       </lineSegments>
+      <Waterline outline={outline} length={length} />
       {keel.kind === 'fin' && <Fin depth={keel.depth} length={keel.length} thickness={keel.thickness} />}
     </>
+  );
+}
+
+/** Where the water meets the sides, so that draught and heel can be read off the hull. */
+function Waterline({
+  outline,
+  length,
+}: {
+  readonly outline: ReturnType<typeof sectionOutline>;
+  readonly length: number;
+}) {
+  const { frame, palette } = useStage();
+  const lines = useGeometry(() => segmentsGeometry(new Array<number>(12).fill(0)), []);
+  const colour = useMemo(() => palette.water.clone().lerp(palette.ink, 0.35), [palette]);
+  const met = useMemo(() => new Float64Array(4), []);
+  useFrame(() => {
+    meetWater(outline, frame.instant, met);
+    const position = lines.getAttribute('position');
+    let count = 0;
+    for (let side = 0; side < 2; side++) {
+      const y = met[2 * side];
+      const z = met[2 * side + 1];
+      if (Number.isNaN(y)) continue;
+      position.setXYZ(count++, -length / 2, y, z);
+      position.setXYZ(count++, length / 2, y, z);
+    }
+    position.needsUpdate = true;
+    lines.setDrawRange(0, count);
+  });
+  return (
+    <lineSegments geometry={lines} raycast={noRaycast} renderOrder={4} frustumCulled={false}>
+      <lineBasicMaterial color={colour} />
+    </lineSegments>
   );
 }
 
