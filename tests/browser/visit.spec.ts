@@ -138,6 +138,7 @@ test('the ledger opens a line to its grounds and moves the ribbon there', async 
   await expect(grounds).toContainText('Source:');
   const at = /Tightest at ([\d.]+) s/.exec((await grounds.textContent()) ?? '')?.[1];
   await expect(page.locator(clock)).toHaveText(`${Number(at).toFixed(2)} s`);
+  expect(await page.evaluate(() => [scrollX, scrollY])).toEqual([0, 0]);
 });
 
 test('the ribbon is scrubbed by pointer and by key', async ({ page }) => {
@@ -189,4 +190,15 @@ test('it works on without a network', async ({ page, context }) => {
   await type(page, 'Wheel speed', '5000');
   await expect.poll(() => figure(page, 'Momentum to give')).not.toBe(before);
   await context.setOffline(false);
+});
+
+test('the browser offers to install it', async ({ page, context }) => {
+  await openApp(page);
+  await page.waitForFunction(async () => (await navigator.serviceWorker.ready).active?.state === 'activated');
+  const session = await context.newCDPSession(page);
+  const { installabilityErrors } = await session.send('Page.getInstallabilityErrors');
+  // A test's context counts as a private window, where no browser installs anything.
+  expect(installabilityErrors.map(({ errorId }) => errorId).filter((id) => id !== 'in-incognito')).toEqual(
+    [],
+  );
 });

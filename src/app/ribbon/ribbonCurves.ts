@@ -154,9 +154,9 @@ export function pressureCurves(
   const unit = unitFor('length', units.length);
   const scale = 1 / unit.toSI;
   const curves: Curve[] = [
-    { label: 'edges of the support', look: 'have', values: column(course.supportLeft, 1, 0, samples, scale) },
+    { label: 'left edge', look: 'have', values: column(course.supportLeft, 1, 0, samples, scale) },
     {
-      label: 'edges of the support',
+      label: 'right edge',
       look: 'have',
       values: column(course.supportRight, 1, 0, samples, scale),
     },
