@@ -28,4 +28,6 @@ export * from './logs/columnMapping';
 export * from './logs/logReader';
 export * from './logs/logTime';
 export * from './resampling';
+export * from './retune';
+export * from './rigPatch';
 export * from './statistics';
