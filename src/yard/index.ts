@@ -1,0 +1,3 @@
+export * from './ground';
+export { MOST_OBJECTS, type SnapshotLayout, snapshotLayout } from './snapshot';
+export { openYard, YARD_STEP, Yard, type YardOutcome, type YardSetting } from './yard';
