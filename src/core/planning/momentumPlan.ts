@@ -136,11 +136,13 @@ function scheduleAxis(
   for (let k = 0; k < nodes; k++) {
     const before = k > 0 ? out.torque[k - 1] : isCyclic ? out.torque[intervals - 1] : 0;
     if (array.kind === 'gimballed') {
-      out.tilt[k] = Math.asin(Math.max(-1, Math.min(1, out.momentum[k] / array.momentum)));
-      const perTorque = -1 / (array.momentum * Math.cos(out.tilt[k]));
-      out.tiltRate[k] = out.torque[k] * perTorque;
-      out.tiltAcceleration[k] =
-        ((out.torque[k] - before) * perTorque) / step + out.tiltRate[k] ** 2 * Math.tan(out.tilt[k]);
+      const sine = Math.max(-1, Math.min(1, out.momentum[k] / array.momentum));
+      const cosine = Math.sqrt(1 - sine * sine);
+      const perTorque = -1 / (array.momentum * cosine);
+      const rate = out.torque[k] * perTorque;
+      out.tilt[k] = Math.asin(sine);
+      out.tiltRate[k] = rate;
+      out.tiltAcceleration[k] = ((out.torque[k] - before) * perTorque) / step + (rate * rate * sine) / cosine;
     }
     if (support.kind === 'firm') {
       const node = k % support.ask.length;

@@ -218,6 +218,7 @@ export function isWithinLimits(
 /** Servo torque of one servo at every node of a schedule. */
 export function fillServoTorque(axis: AxisPlan, schedule: AxisSchedule): void {
   const { servoTorque, tilt, tiltRate, tiltAcceleration, leanRate } = schedule;
+  if (!axis.array.servo) return;
   for (let k = 0; k < servoTorque.length; k++) {
     const body = mix(axis.bodyRate, k, 0) + leanRate[k];
     const smooth = tiltRate[k] * tiltRate[k] * Math.tan(tilt[k]);

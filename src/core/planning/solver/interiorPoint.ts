@@ -22,7 +22,7 @@ export interface InteriorRun {
  */
 const mostRest = 0.01;
 const leastRest = 3e-3;
-/** Stationarity above this share of its tolerance late in a run is rounding, worth a round of refinement. */
+/** Stationarity lost above this share of its tolerance late in a run is worth a round of refinement. */
 const lossShare = 0.05;
 /** From this gap on, relative to the objective, steps may be refined: a careful run refines every one. */
 const lateGap = 1e-6;
@@ -236,6 +236,7 @@ export function runInteriorPoint(
   else if (!startCold(problem, options, work)) return { end: 'stalled', iterations: 0, certificate: null };
   let isKept = false;
   let step = 1;
+  let lastDual = 0;
   for (let iteration = 0; iteration <= options.maxIterations; iteration++) {
     const gap = fillResiduals(problem, work);
     const primal = Math.max(largest(work.equations), largest(work.rowResidual));
@@ -265,7 +266,10 @@ export function runInteriorPoint(
       isKept = true;
     }
     const isLate = gap <= lateGap * (1 + Math.abs(objective));
-    const isLossy = isLate && primal < 1e-3 && (options.careful || dual > lossShare * options.tolerance);
+    // what the step before should have left of the stationarity is not rounding
+    const lost = dual - 2 * (1 - step) * lastDual;
+    const isLossy = isLate && primal < 1e-3 && (options.careful || lost > lossShare * options.tolerance);
+    lastDual = dual;
     step = advance(problem, options, work, gap, isLossy);
     if (!(step > leastStep)) return { end: 'stalled', iterations: iteration, certificate: null };
   }
