@@ -1,7 +1,5 @@
 export * from './arrayLaw';
 export * from './balanceGrade';
-export * from './balanceGrade';
-export * from './bearings';
 export * from './bearings';
 export * from './cautions';
 export * from './closedForms';
