@@ -13,6 +13,7 @@ import {
   type StarGyro,
   type StarModel,
 } from './starModel';
+import { coastDrag } from './wheelDrag';
 import { type WheelProperties, wheelProperties } from './wheelProperties';
 
 export interface CompiledRig {
@@ -93,6 +94,7 @@ function starGyro(gyro: Gyro, wheel: WheelProperties): StarGyro {
     },
     drive,
     spin: spin[gyro.spin.kind],
+    ...(gyro.spin.kind === 'coasting' ? { drag: coastDrag(gyro, wheel.mass) } : {}),
     friction: { coulomb: 0.7 * stiction, stiction, viscous: friction, stribeckRate: 0.05, creepRate: 0.001 },
   };
 }

@@ -38,7 +38,7 @@ export function floatHull(
         const field = `body.${fault.field}`;
         return {
           field,
-          sentence: `${field}: ${formatQuantity(fault.value, 'length')}; it must be ${fault.allowed}.`,
+          sentence: `${field}: ${formatQuantity(fault.value, fault.dimension)}; it must be ${fault.allowed}.`,
         };
       }),
     };
@@ -73,7 +73,11 @@ export function floatHull(
         freedoms: 'roll',
         point: [0, 0, whole.com[2]],
         // A hull alike on both sides has no arm upright; cutting the section leaves rounding there.
-        righting: { kind: 'curve', angle: [...righting.arms.angle], arm: [0, ...righting.arms.arm.subarray(1)] },
+        righting: {
+          kind: 'curve',
+          angle: [...righting.arms.angle],
+          arm: [0, ...righting.arms.arm.subarray(1)],
+        },
         addedInertia: water.addedInertia,
         linearDamping: water.linearDamping,
         quadraticDamping: water.quadraticDamping,

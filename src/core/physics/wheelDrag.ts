@@ -1,7 +1,8 @@
-import type { Bearing, Housing, WheelPart } from '../rig';
-import { bearingDrag, lubricantDrag } from './bearings';
-import type { DragLaw } from './drive';
-import type { WheelDrag } from './losses';
+import type { Bearing, Gyro, Housing, WheelPart } from '../rig';
+import { permissibleUnbalance } from './balanceGrade';
+import { bearingDrag, bearingLoads, equivalentDynamicLoad, lubricantDrag } from './bearings';
+import { type DragLaw, torqueConstantOf } from './drive';
+import { noDrag, type WheelDrag } from './losses';
 import { outerRadiusOf } from './wheelProperties';
 import { airAt, type Gas, STANDARD_PRESSURE, type Surround, type Windage, windage } from './windage';
 
@@ -116,4 +117,36 @@ export function fitWheelDrag(parts: WheelDragParts, speed: number): WheelDrag {
     return { constant: parts.bearings, viscous: 0, quadratic: torque / (speed * speed) };
   }
   return { constant: parts.bearings, viscous: torque / speed - quadratic * speed, quadratic };
+}
+
+/** rad/s; slower than this a wheel counts as at rest, and no drag law is fitted to it. */
+const SLOWEST_SPEED = 0.1;
+
+/**
+ * Drag of a wheel that coasts with its gimbal at rest, as the dynamics takes it: bearings under weight and the
+ * unbalance its grade permits, their lubricant, windage, and the friction of the motor that turns along.
+ *
+ * @param mass  kg, of the wheel
+ *
+ * O(1). Sources: as for `wheelDragParts`.
+ */
+export function coastDrag(gyro: Gyro, mass: number): WheelDrag {
+  const { speed, bearing, motor } = gyro;
+  if (speed < SLOWEST_SPEED) return noDrag;
+  const [load] = bearingLoads({
+    mass,
+    momentum: 0,
+    unbalance: permissibleUnbalance(gyro.wheel.balanceGrade, speed, mass),
+    speed,
+    gimbalRate: 0,
+    toLeft: bearing.span / 2,
+    toRight: bearing.span / 2,
+    preload: 0,
+    loadFactor: 1,
+  });
+  const steady = equivalentDynamicLoad(load.radial, load.axial, bearing.staticRating);
+  const parts = wheelDragParts(wheelEnvelope(gyro.wheel.parts), gyro.housing, bearing, [steady, steady]);
+  const fitted = fitWheelDrag(parts, speed);
+  const friction = torqueConstantOf(motor.velocityConstant) * motor.noLoadCurrent;
+  return { ...fitted, constant: fitted.constant + friction };
 }

@@ -1,6 +1,7 @@
 /** Starting values for new parts: our own choices, of a size common on a bench. */
 import type { Bearing, Gimbal, Motor, Servo, Wheel } from './parts';
 import type { Gyro, Power, Sensing } from './schema';
+import { findStockBearing } from './stockBearings';
 
 const rpm = (value: number): number => (value * 2 * Math.PI) / 60;
 const degrees = (value: number): number => (value * Math.PI) / 180;
@@ -26,11 +27,13 @@ export const BENCH_MOTOR: Motor = {
   currentLimit: 15,
 };
 
+const BENCH_BEARING_SIZE = findStockBearing('626')!;
+
 export const BENCH_BEARING: Bearing = {
-  name: '626',
-  dynamicRating: 2600,
-  staticRating: 1050,
-  bore: 0.006,
+  name: BENCH_BEARING_SIZE.name,
+  dynamicRating: BENCH_BEARING_SIZE.dynamicRating,
+  staticRating: BENCH_BEARING_SIZE.staticRating,
+  bore: BENCH_BEARING_SIZE.bore,
   friction: 0.0015,
   span: 0.024,
 };
