@@ -2,6 +2,16 @@ import { discretiseLean } from './leanStep';
 import { boundControl, type ControlForm, freeControl } from './momentumPlanBounds';
 import { type AxisLayout, countRows, type PlanLayout } from './momentumPlanLayout';
 import type { FirmSupport, LeanSupport, MomentumPlanProblem } from './momentumPlanProblem';
+import {
+  addIdleRow,
+  addRow,
+  addSquare,
+  addTerm,
+  clearForm,
+  createWriter,
+  formOfControl,
+  type Writer,
+} from './momentumPlanWriter';
 import type { StageProblem } from './solver';
 
 /** The pass before, about which the servo rows are linearised; each is axes x (N + 1). */
@@ -19,62 +29,6 @@ export interface PreviousPass {
 const changeTime = 0.1;
 /** Weight left on the plan's own objective when the shared scalar is what is made small. */
 const faintWeight = 1e-9;
-
-/** Writes squares and rows of affine forms into a stage problem; keeps the constant the squares leave. */
-interface Writer {
-  readonly problem: StageProblem;
-  readonly at: Int32Array;
-  readonly by: Float64Array;
-  count: number;
-  constant: number;
-  row: number;
-  /** constant of the form being written */
-  offset: number;
-}
-
-function addTerm(w: Writer, index: number, coefficient: number): void {
-  w.at[w.count] = index;
-  w.by[w.count] = coefficient;
-  w.count += 1;
-}
-
-function clearForm(w: Writer): void {
-  w.count = 0;
-  w.offset = 0;
-}
-
-/** Adds weight * (form + offset)^2 to the objective of node k. */
-function addSquare(w: Writer, k: number, weight: number): void {
-  const { sizes, hessian, gradient } = w.problem;
-  const { width } = sizes;
-  for (let i = 0; i < w.count; i++) {
-    const row = (k * width + w.at[i]) * width;
-    gradient[k * width + w.at[i]] += 2 * weight * w.by[i] * w.offset;
-    for (let j = 0; j < w.count; j++) hessian[row + w.at[j]] += 2 * weight * w.by[i] * w.by[j];
-  }
-  w.constant += weight * w.offset * w.offset;
-}
-
-/** Next row: sign * (form + offset) <= bound + loosening * shared. */
-function addRow(w: Writer, sign: number, bound: number, loosening: number): void {
-  const { sizes, rows, rowsShared, bound: bounds } = w.problem;
-  const at = w.row * sizes.width;
-  for (let i = 0; i < w.count; i++) rows[at + w.at[i]] += sign * w.by[i];
-  bounds[w.row] = bound - sign * w.offset;
-  if (sizes.shared > 0) rowsShared[w.row] = -loosening;
-  w.row += 1;
-}
-
-/** A row that limits nothing, so that the number of rows does not hang on the data. */
-function addIdleRow(w: Writer): void {
-  w.problem.bound[w.row] = 1;
-  w.row += 1;
-}
-
-function formOfControl(w: Writer, layout: AxisLayout, control: ControlForm, factor: number): void {
-  if (control.slope !== 0) addTerm(w, layout.control, factor * control.slope);
-  w.offset += factor * control.constant;
-}
 
 function writeDynamics(
   problem: MomentumPlanProblem,
@@ -382,15 +336,7 @@ export function assemblePlan(
     part.fill(0);
   for (const part of [out.bound, out.boundaryStart, out.boundaryEnd, out.boundaryValue]) part.fill(0);
   out.sharedGradient.fill(1);
-  const w: Writer = {
-    problem: out,
-    at: new Int32Array(8),
-    by: new Float64Array(8),
-    count: 0,
-    constant: 0,
-    row: 0,
-    offset: 0,
-  };
+  const w = createWriter(out);
   const faint = plan.mode === 'plan' ? 1 : faintWeight;
   const widest = problem.axes.map(({ support }) => (support.kind === 'firm' ? halfOfWidest(support) : 0));
   const steps = problem.axes.map(({ support }) =>
