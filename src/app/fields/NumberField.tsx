@@ -1,8 +1,9 @@
-import { type KeyboardEvent, type PointerEvent, useId, useRef, useState } from 'react';
+import { type KeyboardEvent, useId, useRef, useState } from 'react';
 import { describeRange, type QuantityInfo } from '../../core/rig';
 import { formatQuantity, fromSI, parseQuantity, toSI, unitFor } from '../../core/units';
 import { useSession } from '../state/session';
 import { showNumber, stepFrom, stepsFor, tidy, unitThatFits } from './stepSize';
+import { PIXELS_PER_DRAG_STEP, useTapeDrag } from './useTapeDrag';
 
 export interface NumberFieldProps {
   readonly info: QuantityInfo;
@@ -17,20 +18,9 @@ export interface NumberFieldProps {
   readonly onCancel?: (() => void) | undefined;
 }
 
-const PIXELS_PER_DRAG_STEP = 4;
-const PIXELS_BEFORE_DRAG = 5;
 const LARGE_STEP = 10;
 /** Letters; a longer unit stands under the label. */
 const LONGEST_UNIT_IN_BOX = 6;
-
-interface Drag {
-  readonly pointer: number;
-  readonly x: number;
-  readonly shown: number;
-  readonly step: number;
-  readonly symbol: string;
-  hasMoved: boolean;
-}
 
 type Taken =
   | { readonly kind: 'taken'; readonly si: number }
@@ -55,117 +45,30 @@ function readTyped(text: string, info: QuantityInfo, symbol: string, label: stri
 export function NumberField(props: NumberFieldProps) {
   const { info, value, isReadOnly = false } = props;
   const id = useId();
-  const chosen = useSession((session) => session.units[info.dimension]);
-  const input = useRef<HTMLInputElement>(null);
-  const drag = useRef<Drag>(undefined);
-  const [typed, setTyped] = useState<string>();
-  const [fault, setFault] = useState<string>();
-
-  // While it is dragged the tape keeps its unit, whatever size the number comes to.
-  const symbol = drag.current?.symbol ?? unitThatFits(info.dimension, value, chosen).symbol;
-  const unit = unitFor(info.dimension, symbol);
-  const shown = tidy(fromSI(value, info.dimension, symbol));
-  const steps = stepsFor(info, shown, symbol);
   const label = props.label ?? info.label;
-
-  const clamp = (si: number): number => Math.min(info.max, Math.max(info.min, si));
-  const offer = (inUnit: number): void => {
-    setFault(undefined);
-    const next = clamp(toSI(inUnit, info.dimension, symbol));
-    if (next !== value) props.onChange(info.dimension === 'count' ? Math.round(next) : next);
-  };
-  const step = (direction: 1 | -1, times = 1): void => {
-    setTyped(undefined);
-    offer(stepFrom(shown, steps.button * times, direction));
-  };
-
-  const takeTyped = (): void => {
-    const text = typed;
-    setTyped(undefined);
-    if (text === undefined || text === showNumber(shown)) return;
-    const taken = readTyped(text, info, unit.symbol, label);
-    setFault(taken.kind === 'refused' ? taken.sentence : undefined);
-    if (taken.kind === 'taken' && taken.si !== value) props.onChange(taken.si);
-  };
-
-  const onKeyDown = (event: KeyboardEvent): void => {
-    if (event.key === 'Enter') takeTyped();
-    else if (event.key === 'Escape') {
-      setTyped(undefined);
-      setFault(undefined);
-    } else if (event.key === 'ArrowUp' || event.key === 'ArrowDown') {
-      step(event.key === 'ArrowUp' ? 1 : -1, event.shiftKey ? LARGE_STEP : 1);
-    } else return;
-    event.preventDefault();
-  };
-
-  const onPointerDown = (event: PointerEvent): void => {
-    if (isReadOnly || event.button !== 0 || document.activeElement === input.current) return;
-    drag.current = {
-      pointer: event.pointerId,
-      x: event.clientX,
-      shown,
-      step: steps.drag,
-      symbol,
-      hasMoved: false,
-    };
-    // Focus would open the keyboard of a tablet: it comes at the end of a tap, not at the start of a drag.
-    event.preventDefault();
-    event.currentTarget.setPointerCapture(event.pointerId);
-  };
-  const onPointerMove = (event: PointerEvent): void => {
-    const current = drag.current;
-    if (!current || current.pointer !== event.pointerId) return;
-    const moved = event.clientX - current.x;
-    if (!current.hasMoved) {
-      if (Math.abs(moved) < PIXELS_BEFORE_DRAG) return;
-      current.hasMoved = true;
-      props.onBegin?.();
-    }
-    const places = Math.round(moved / PIXELS_PER_DRAG_STEP);
-    offer(tidy((Math.round(current.shown / current.step) + places) * current.step));
-  };
-  const onPointerUp = (event: PointerEvent): void => {
-    const current = drag.current;
-    if (!current || current.pointer !== event.pointerId) return;
-    drag.current = undefined;
-    if (current.hasMoved) props.onCommit?.();
-    else {
-      input.current?.focus();
-      input.current?.select();
-    }
-  };
-  const onPointerCancel = (): void => {
-    if (drag.current?.hasMoved) props.onCancel?.();
-    drag.current = undefined;
-  };
-
+  const number = useNumber(props, label);
+  const { unit, shown, fault, tape } = number;
   const hasLongUnit = unit.symbol.length > LONGEST_UNIT_IN_BOX;
-  const travel = (shown / steps.drag) * PIXELS_PER_DRAG_STEP;
+  const inUnit = (si: number): number => fromSI(si, info.dimension, unit.symbol);
+
   return (
-    <div className="number" data-fault={fault !== undefined || undefined}>
+    <div className="number">
       <label className="number-label" htmlFor={id}>
         {label}
         {hasLongUnit && <small> {unit.symbol}</small>}
       </label>
-      <button
-        type="button"
-        className="number-step"
-        disabled={isReadOnly}
-        aria-label={`Less ${label}`}
-        onClick={() => step(-1)}
-      >
-        −
-      </button>
+      <StepButton sign="−" name={`Less ${label}`} isReadOnly={isReadOnly} onPress={() => number.step(-1)} />
       <div
         className="number-box"
-        onPointerDown={onPointerDown}
-        onPointerMove={onPointerMove}
-        onPointerUp={onPointerUp}
-        onPointerCancel={onPointerCancel}
+        onPointerDown={(event) =>
+          tape.onPointerDown(event, { shown, step: number.dragStep, symbol: unit.symbol })
+        }
+        onPointerMove={tape.onPointerMove}
+        onPointerUp={tape.onPointerUp}
+        onPointerCancel={tape.onPointerCancel}
       >
         <input
-          ref={input}
+          ref={number.input}
           id={id}
           className="number-value"
           role="spinbutton"
@@ -174,38 +77,104 @@ export function NumberField(props: NumberFieldProps) {
           spellCheck={false}
           readOnly={isReadOnly}
           aria-valuenow={shown}
-          aria-valuemin={fromSI(info.min, info.dimension, symbol)}
-          aria-valuemax={fromSI(info.max, info.dimension, symbol)}
-          aria-valuetext={formatQuantity(value, info.dimension, symbol, 4)}
+          aria-valuemin={inUnit(info.min)}
+          aria-valuemax={inUnit(info.max)}
+          aria-valuetext={formatQuantity(value, info.dimension, unit.symbol, 4)}
           aria-invalid={fault !== undefined}
           aria-describedby={fault === undefined ? undefined : `${id}-fault`}
-          value={typed ?? showNumber(shown)}
-          onChange={(event) => setTyped(event.target.value)}
+          value={number.typed ?? showNumber(shown)}
+          onChange={(event) => number.setTyped(event.target.value)}
           onFocus={(event) => event.target.select()}
-          onBlur={takeTyped}
-          onKeyDown={onKeyDown}
+          onBlur={number.takeTyped}
+          onKeyDown={number.onKeyDown}
         />
         {unit.symbol !== '' && !hasLongUnit && <span className="number-unit">{unit.symbol}</span>}
-        <span
-          className="number-rule"
-          style={{ backgroundPositionX: `calc(50% - ${(travel % 2000).toFixed(1)}px)` }}
-          aria-hidden
-        />
+        <Rule places={shown / number.dragStep} />
       </div>
-      <button
-        type="button"
-        className="number-step"
-        disabled={isReadOnly}
-        aria-label={`More ${label}`}
-        onClick={() => step(1)}
-      >
-        +
-      </button>
+      <StepButton sign="+" name={`More ${label}`} isReadOnly={isReadOnly} onPress={() => number.step(1)} />
       {fault !== undefined && (
         <p className="number-fault" id={`${id}-fault`} role="alert">
           {fault}
         </p>
       )}
     </div>
+  );
+}
+
+/** The number behind a field: what is shown, what is being typed, and every way of changing it. */
+function useNumber(props: NumberFieldProps, label: string) {
+  const { info, value, onChange } = props;
+  const chosen = useSession((session) => session.units[info.dimension]);
+  const input = useRef<HTMLInputElement>(null);
+  const [typed, setTyped] = useState<string>();
+  const [fault, setFault] = useState<string>();
+
+  const offer = (inUnit: number): void => {
+    setFault(undefined);
+    const si = toSI(inUnit, info.dimension, symbol);
+    const next = Math.min(info.max, Math.max(info.min, info.dimension === 'count' ? Math.round(si) : si));
+    if (next !== value) onChange(next);
+  };
+  const tape = useTapeDrag({ ...props, isReadOnly: props.isReadOnly ?? false, input, offer });
+
+  // While it is dragged the tape keeps its unit and its step, whatever size the number comes to.
+  const symbol = tape.held.current?.symbol ?? unitThatFits(info.dimension, value, chosen).symbol;
+  const shown = tidy(fromSI(value, info.dimension, symbol));
+  const steps = stepsFor(info, shown, symbol);
+
+  const step = (direction: 1 | -1, times = 1): void => {
+    setTyped(undefined);
+    offer(stepFrom(shown, steps.button * times, direction));
+  };
+  const takeTyped = (): void => {
+    const text = typed;
+    setTyped(undefined);
+    if (text === undefined || text === showNumber(shown)) return;
+    const taken = readTyped(text, info, symbol, label);
+    setFault(taken.kind === 'refused' ? taken.sentence : undefined);
+    if (taken.kind === 'taken' && taken.si !== value) onChange(taken.si);
+  };
+  const onKeyDown = (event: KeyboardEvent): void => {
+    if (event.key === 'Enter') takeTyped();
+    else if (event.key === 'Escape') {
+      setTyped(undefined);
+      setFault(undefined);
+    } else if (event.key === 'ArrowUp' || event.key === 'ArrowDown') {
+      if (props.isReadOnly) return;
+      step(event.key === 'ArrowUp' ? 1 : -1, event.shiftKey ? LARGE_STEP : 1);
+    } else return;
+    event.preventDefault();
+  };
+
+  const dragStep = tape.held.current?.step ?? steps.drag;
+  const unit = unitFor(info.dimension, symbol);
+  return { input, unit, shown, dragStep, typed, setTyped, takeTyped, fault, step, onKeyDown, tape };
+}
+
+interface StepButtonProps {
+  readonly sign: string;
+  readonly name: string;
+  readonly isReadOnly: boolean;
+  readonly onPress: () => void;
+}
+
+const StepButton = ({ sign, name, isReadOnly, onPress }: StepButtonProps) => (
+  <button type="button" className="number-step" disabled={isReadOnly} aria-label={name} onClick={onPress}>
+    {sign}
+  </button>
+);
+
+/** CSS pixels after which the pattern of ticks repeats; agrees with styles/fields.css. */
+const RULE_LENGTH = 2000;
+
+/** The ticks under a number, drawn along as it changes. */
+function Rule({ places }: { readonly places: number }) {
+  const travel = (places * PIXELS_PER_DRAG_STEP) % RULE_LENGTH;
+  return (
+    <span
+      className="number-rule"
+      style={{ backgroundPositionX: `calc(50% - ${travel.toFixed(1)}px)` }}
+      aria-hidden
+    />
   );
 }
