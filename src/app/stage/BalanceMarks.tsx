@@ -10,9 +10,9 @@ import {
   type Sprite,
 } from 'three';
 import { convexHull } from '../../core/planning';
-import { usePixelHeight, useTexture } from './Ground';
 import { useGeometry } from './Inked';
 import { rotateInto } from './legPose';
+import { usePixelHeight, useTexture } from './StageLabel';
 import { segmentsGeometry } from './shapes';
 import { useStage } from './stageFrame';
 
@@ -32,6 +32,28 @@ const DASHES = 24;
 /** CSS pixels across. */
 const COM_SIZE = 23;
 
+/** The quartered disc that stands for a centre of mass on drawings, 128 pixels across. */
+function drawQuarters(context: CanvasRenderingContext2D, ink: string, paper: string): void {
+  const circle = (): void => {
+    context.beginPath();
+    context.arc(64, 64, 54, 0, 2 * Math.PI);
+  };
+  context.lineWidth = 7;
+  context.fillStyle = paper;
+  context.strokeStyle = ink;
+  circle();
+  context.fill();
+  context.fillStyle = ink;
+  for (const start of [0, Math.PI]) {
+    context.beginPath();
+    context.moveTo(64, 64);
+    context.arc(64, 64, 54, start, start + Math.PI / 2);
+    context.fill();
+  }
+  circle();
+  context.stroke();
+}
+
 /** The quartered disc of drawings, always in sight, and a plumb line to the ground. */
 function CentreOfMass() {
   const { frame, palette, size } = useStage();
@@ -41,29 +63,7 @@ function CentreOfMass() {
   const foot = useRef<Group>(null);
   const ink = `#${palette.ink.getHexString()}`;
   const paper = `#${palette.raised.getHexString()}`;
-  const texture = useTexture(
-    (context) => {
-      context.lineWidth = 7;
-      context.fillStyle = paper;
-      context.strokeStyle = ink;
-      context.beginPath();
-      context.arc(64, 64, 54, 0, 2 * Math.PI);
-      context.fill();
-      context.fillStyle = ink;
-      for (const start of [0, Math.PI]) {
-        context.beginPath();
-        context.moveTo(64, 64);
-        context.arc(64, 64, 54, start, start + Math.PI / 2);
-        context.fill();
-      }
-      context.beginPath();
-      context.arc(64, 64, 54, 0, 2 * Math.PI);
-      context.stroke();
-    },
-    128,
-    128,
-    [ink, paper],
-  );
+  const texture = useTexture((context) => drawQuarters(context, ink, paper), 128, 128, [ink, paper]);
   const line = useGeometry(() => {
     const points: number[] = [];
     for (let i = 0; i < DASHES; i++) points.push(0, 0, i / DASHES, 0, 0, (i + 0.55) / DASHES);

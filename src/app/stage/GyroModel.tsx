@@ -19,8 +19,9 @@ import { Inked, useGeometry } from './Inked';
 import { BEARINGS_STAND } from './Mounts';
 import { Protractor } from './Protractor';
 import { gimbalFrame } from './partEdits';
-import { arcTube, frameGeometry, wheelGeometry } from './shapes';
+import { arcTube, frameGeometry } from './shapes';
 import { useStage } from './stageFrame';
+import { wheelGeometry } from './wheelShape';
 
 /**
  * Wheels are shown turning this much slower than they do, so that the eye can follow the mark on them. Their
@@ -39,7 +40,7 @@ export function Gyros() {
 }
 
 /** Turns the frame's own axes (x along the spin axis at rest, y square to both, z along the gimbal axis) into the body's. */
-export function gimbalAttitude(gyro: Gyro): Quaternion {
+function gimbalAttitude(gyro: Gyro): Quaternion {
   const { g, s, t } = gimbalFrame(gyro);
   const basis = new Matrix4().makeBasis(new Vector3(...s), new Vector3(...t), new Vector3(...g));
   return new Quaternion().setFromRotationMatrix(basis);

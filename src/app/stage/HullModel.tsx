@@ -86,7 +86,6 @@ function Waterline({
 }) {
   const { frame, palette } = useStage();
   const lines = useGeometry(() => segmentsGeometry(new Array<number>(12).fill(0)), []);
-  const colour = useMemo(() => palette.water.clone().lerp(palette.ink, 0.35), [palette]);
   const met = useMemo(() => new Float64Array(4), []);
   useFrame(() => {
     meetWater(outline, frame.instant, met);
@@ -104,7 +103,7 @@ function Waterline({
   });
   return (
     <lineSegments geometry={lines} raycast={noRaycast} renderOrder={4} frustumCulled={false}>
-      <lineBasicMaterial color={colour} />
+      <lineBasicMaterial color={palette.waterline} />
     </lineSegments>
   );
 }

@@ -13,7 +13,7 @@ import { hipPositions } from '../../core/physics';
 import type { LeggedBody } from '../../core/rig';
 import { footThickness, torsoCentre } from './bodyPlaces';
 import { Inked, useGeometry } from './Inked';
-import { createLegPoses, poseLegs } from './legPose';
+import { createLegPoses, type LegPose, poseLegs } from './legPose';
 import { useStage } from './stageFrame';
 
 /** Torso and pelvis. Drawn in the body frame, like the legs. */
@@ -83,6 +83,18 @@ function span(limb: Object3D, start: Float64Array, end: Float64Array): void {
   limb.scale.set(1, length || 1e-6, 1);
 }
 
+/** Moves the parts of one leg, in the order in which `Legs` mounts them. */
+function placeParts(parts: readonly Object3D[], pose: LegPose, thickness: number): void {
+  const [thigh, shank, hip, knee, ankle, foot] = parts;
+  span(thigh, pose.knee, pose.hip);
+  span(shank, pose.knee, pose.ankle);
+  hip.position.fromArray(pose.hip);
+  knee.position.fromArray(pose.knee);
+  ankle.position.fromArray(pose.ankle);
+  ankle.position.z += thickness;
+  foot.position.fromArray(pose.sole);
+}
+
 /** Legs and feet in the body frame: hips of the body, soles of the motion, knees between them. */
 export function Legs({ body }: { readonly body: LeggedBody }) {
   const { frame, palette } = useStage();
@@ -103,22 +115,7 @@ export function Legs({ body }: { readonly body: LeggedBody }) {
     poseLegs(body, frame.instant.pose, frame.instant.feet, poses);
     poses.forEach((pose, leg) => {
       const parts = groups.current[leg]?.children;
-      if (!parts) return;
-      const [upper, lower, hip, knee, ankle, plate] = parts as [
-        Object3D,
-        Object3D,
-        Object3D,
-        Object3D,
-        Object3D,
-        Object3D,
-      ];
-      span(upper, pose.knee, pose.hip);
-      span(lower, pose.knee, pose.ankle);
-      hip.position.fromArray(pose.hip);
-      knee.position.fromArray(pose.knee);
-      ankle.position.fromArray(pose.ankle);
-      ankle.position.z += thickness;
-      plate.position.fromArray(pose.sole);
+      if (parts) placeParts(parts, pose, thickness);
     });
   });
 

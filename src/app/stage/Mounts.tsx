@@ -1,9 +1,9 @@
 import { BoxGeometry, type BufferGeometry } from 'three';
-import { mergeGeometries } from 'three/examples/jsm/utils/BufferGeometryUtils.js';
 import type { Rig } from '../../core/rig';
 import { type Point, torsoCentre, wheelExtent } from './bodyPlaces';
 import { Inked, useGeometry } from './Inked';
 import { gimbalFrame } from './partEdits';
+import { merged } from './shapes';
 import { useStage } from './stageFrame';
 
 /** Bearings stand this many wheel radii from the middle of the wheel along the gimbal axis. */
@@ -61,9 +61,7 @@ function mountGeometry(rig: Rig): BufferGeometry | undefined {
       new BoxGeometry(thick, Math.max(thick, y1 - y0 - thick), thick).translate(x, (y0 + y1) / 2, middle),
     );
   }
-  const whole = mergeGeometries(parts);
-  for (const part of parts) part.dispose();
-  return whole ?? undefined;
+  return merged(parts);
 }
 
 const extreme = (posts: readonly Post[], axis: 0 | 1, end: number): number => {

@@ -43,36 +43,15 @@ interface ProtractorProps {
   readonly radius: number;
 }
 
-/** Sector of the tilts allowed, about the gimbal axis; the solid needle is the tilt now, the hollow one the plan's. */
+/** Sector of the tilts allowed, about the gimbal axis, with its needles. */
 export function Protractor({ gyro, index, radius }: ProtractorProps) {
-  const { frame, palette } = useStage();
-  const present = useRef<Group>(null);
-  const planned = useRef<Group>(null);
+  const { palette } = useStage();
   const outer = PROTRACTOR_RADIUS * radius;
   const inner = 0.62 * outer;
   const { min, max } = gyro.tilt;
   const sector = useGeometry(() => sectorGeometry(inner, outer, min, max), [inner, outer, min, max]);
   const marks = useGeometry(() => segmentsGeometry(ticks(inner, outer, min, max)), [inner, outer, min, max]);
   const stop = useGeometry(() => sectorGeometry(inner * 0.94, outer * 1.08, -0.022, 0.022), [inner, outer]);
-  const solid = useGeometry(
-    () => new ShapeGeometry(needleShape(0.12 * outer, outer * 1.04, 0.07 * outer)),
-    [outer],
-  );
-  const hollow = useGeometry(() => {
-    const shape = needleShape(0.12 * outer, outer * 1.16, 0.12 * outer);
-    shape.holes.push(needleShape(0.17 * outer, outer * 0.86, 0.078 * outer));
-    return new ShapeGeometry(shape);
-  }, [outer]);
-
-  useFrame(() => {
-    if (present.current) present.current.rotation.z = frame.instant.tilt[index] ?? 0;
-    if (planned.current) {
-      const plan = frame.instant.plannedTilt[index];
-      planned.current.visible = Number.isFinite(plan);
-      if (Number.isFinite(plan)) planned.current.rotation.z = plan;
-    }
-  });
-
   const lift = 0.012 * radius;
   return (
     <group position={[0, 0, PROTRACTOR_STANDS * radius]}>
@@ -99,6 +78,43 @@ export function Protractor({ gyro, index, radius }: ProtractorProps) {
           <meshBasicMaterial color={palette.ink} side={DoubleSide} />
         </mesh>
       ))}
+      <Needles index={index} outer={outer} lift={lift} />
+    </group>
+  );
+}
+
+interface NeedleProps {
+  readonly index: number;
+  readonly outer: number;
+  readonly lift: number;
+}
+
+/** The solid needle is the tilt now, the hollow one the plan's; without a plan there is none. */
+function Needles({ index, outer, lift }: NeedleProps) {
+  const { frame, palette } = useStage();
+  const present = useRef<Group>(null);
+  const planned = useRef<Group>(null);
+  const solid = useGeometry(
+    () => new ShapeGeometry(needleShape(0.12 * outer, outer * 1.04, 0.07 * outer)),
+    [outer],
+  );
+  const hollow = useGeometry(() => {
+    const shape = needleShape(0.12 * outer, outer * 1.16, 0.12 * outer);
+    shape.holes.push(needleShape(0.17 * outer, outer * 0.86, 0.078 * outer));
+    return new ShapeGeometry(shape);
+  }, [outer]);
+
+  useFrame(() => {
+    if (present.current) present.current.rotation.z = frame.instant.tilt[index] ?? 0;
+    if (planned.current) {
+      const plan = frame.instant.plannedTilt[index];
+      planned.current.visible = Number.isFinite(plan);
+      if (Number.isFinite(plan)) planned.current.rotation.z = plan;
+    }
+  });
+
+  return (
+    <>
       <group ref={planned} position={[0, 0, 2 * lift]}>
         <mesh geometry={hollow} renderOrder={6}>
           <meshBasicMaterial color={palette.soft} side={DoubleSide} />
@@ -109,6 +125,6 @@ export function Protractor({ gyro, index, radius }: ProtractorProps) {
           <meshBasicMaterial color={palette.ink} side={DoubleSide} />
         </mesh>
       </group>
-    </group>
+    </>
   );
 }

@@ -6,7 +6,7 @@ import { useSession } from '../state/session';
 import { stream } from '../state/stream';
 import { BalanceMarks } from './BalanceMarks';
 import { Ghost } from './Ghost';
-import { Ground, Water } from './Ground';
+import { Ground } from './Ground';
 import { Gyros } from './GyroModel';
 import { Handles } from './Handles';
 import { HullModel } from './HullModel';
@@ -19,6 +19,7 @@ import { selectTapped } from './picking';
 import { QuantityArrows } from './QuantityArrows';
 import { createSetting, StageContext, useShown, useStage } from './stageFrame';
 import { type ViewAsk, Viewpoint } from './Viewpoint';
+import { Water } from './Water';
 
 interface SceneProps {
   readonly palette: Palette;

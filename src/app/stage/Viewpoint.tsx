@@ -49,27 +49,38 @@ const moved = (box: Box, pose: ArrayLike<number>): Box => ({
 
 const work = new Vector3();
 
-/** The eye: framed on load and when asked, moved by hand between, and led along when the body walks away. */
-export function Viewpoint({ ask }: { readonly ask: ViewAsk }) {
-  const { box, size, frame, rig } = useStage();
+/** Middle of the rig as it stands, in the renderer's axes. */
+const bodyPlace = (box: Box, pose: ArrayLike<number>, out: Vector3): Vector3 =>
+  toRenderer(boxCentre(moved(box, pose)), out);
+
+/** What the hooks of the viewpoint share: the camera and its controls, and what of the picture is free. */
+function useEye() {
   const camera = useThree((state) => state.camera) as PerspectiveCamera;
   const controls = useThree((state) => state.controls) as unknown as Controls | null;
   const viewport = useThree((state) => state.size);
   const invalidate = useThree((state) => state.invalidate);
   const covered = useSession((state) => state.stageInsets);
   const insets = useMemo(() => withCaption(covered, viewport), [covered, viewport]);
-  const isTouched = useRef(false);
-  const pressed = useRef(new Vector3());
-  const framedSize = useRef(0);
-  const framedKind = useRef('');
+  return { camera, controls, viewport, invalidate, insets };
+}
 
-  const look = useCallback(
-    (eye: Point): void => {
+type Eye = ReturnType<typeof useEye>;
+type Flag = { current: boolean };
+
+/** Looks at the rig from a direction, near enough to fill the free part of the picture. */
+function useLook(
+  { camera, controls, viewport, invalidate, insets }: Eye,
+  anchor: { readonly current: Vector3 },
+): (eye: Point) => void {
+  const { box, size, frame } = useStage();
+  return useCallback(
+    (eye) => {
       if (!controls || viewport.width === 0) return;
       const place = moved(box, frame.instant.pose);
       const picture = { width: viewport.width, height: viewport.height, insets };
       const distance = frameDistance(place, eye, FIELD_OF_VIEW * DEGREE, picture);
       toRenderer(boxCentre(place), controls.target);
+      anchor.current.set(0, 0, 0);
       camera.position.copy(controls.target).addScaledVector(toRenderer(eye, work), distance);
       camera.near = distance / 60;
       camera.far = distance + 30 * size;
@@ -79,10 +90,12 @@ export function Viewpoint({ ask }: { readonly ask: ViewAsk }) {
       controls.update();
       invalidate();
     },
-    [box, camera, controls, frame, insets, invalidate, size, viewport],
+    [anchor, box, camera, controls, frame, insets, invalidate, size, viewport],
   );
+}
 
-  // The middle of the picture is moved to the middle of what nothing lies over.
+/** Moves the middle of the picture to the middle of what nothing lies over. */
+function useFreeMiddle({ camera, viewport, invalidate, insets }: Eye): void {
   useEffect(() => {
     const { width, height } = viewport;
     if (width === 0) return;
@@ -90,63 +103,95 @@ export function Viewpoint({ ask }: { readonly ask: ViewAsk }) {
     camera.setViewOffset(width, height, -free.right, -free.down, width, height);
     invalidate();
   }, [camera, insets, invalidate, viewport]);
+}
 
-  // Framed on load, when the rig is another, and when the room changes before the eye was moved by hand; never
-  // by an edit, which must not move the picture under the hand that makes it.
-  const room = useRef<readonly unknown[]>([]);
+/**
+ * Frames on load, when the rig is another, and when the room changes before the eye was moved by hand; never by an
+ * edit, which must not move the picture under the hand that makes it.
+ */
+function useFirstLook(
+  { controls, viewport, insets }: Eye,
+  look: (eye: Point) => void,
+  isTouched: Flag,
+): void {
+  const { size, rig } = useStage();
+  const { kind } = rig.body;
+  const framed = useRef({ size: 0, kind: '', viewport: undefined as unknown, insets: undefined as unknown });
   useEffect(() => {
     if (!controls) return;
-    const ratio = framedSize.current > 0 ? size / framedSize.current : Number.POSITIVE_INFINITY;
-    const isAnother = rig.body.kind !== framedKind.current || ratio > RESIZE || ratio < 1 / RESIZE;
-    const isRoomNew = room.current[0] !== viewport || room.current[1] !== insets;
-    room.current = [viewport, insets];
-    if (isAnother) {
-      framedSize.current = size;
-      framedKind.current = rig.body.kind;
-      if (!isDragging()) isTouched.current = false;
-    }
+    const last = framed.current;
+    const ratio = last.size > 0 ? size / last.size : Number.POSITIVE_INFINITY;
+    const isAnother = kind !== last.kind || ratio > RESIZE || ratio < 1 / RESIZE;
+    const isRoomNew = last.viewport !== viewport || last.insets !== insets;
+    framed.current = { size: isAnother ? size : last.size, kind, viewport, insets };
+    if (isAnother && !isDragging()) isTouched.current = false;
     if ((isAnother && !isDragging()) || (isRoomNew && !isTouched.current)) look(eyeDirection('corner'));
-  }, [controls, insets, look, rig.body.kind, size, viewport]);
+  }, [controls, insets, isTouched, kind, look, size, viewport]);
+}
 
+/** Answers the buttons. */
+function useAsked(
+  { camera, controls }: Eye,
+  look: (eye: Point) => void,
+  ask: ViewAsk,
+  isTouched: Flag,
+): void {
+  // Only another ask is an ask: not another way of looking.
   const lookNow = useRef(look);
   lookNow.current = look;
   useEffect(() => {
     if (ask.count === 0 || !controls) return;
     if (ask.view !== 'frame') {
-      isTouched.current = ask.view !== 'corner';
+      isTouched.current = true;
       lookNow.current(eyeDirection(ask.view));
       return;
     }
     // Framing keeps the side the rig is looked at from.
     work.copy(camera.position).sub(controls.target).normalize();
     lookNow.current([work.x, -work.z, work.y]);
-  }, [ask, camera, controls]);
+  }, [ask, camera, controls, isTouched]);
+}
 
+/** Leads the eye along when the body walks away from where the view was framed or put by hand. */
+function useLeash({ camera, controls }: Eye, anchor: { readonly current: Vector3 }): void {
+  const { size, frame, box } = useStage();
   useFrame(() => {
     if (!controls) return;
-    const [x, y] = frame.instant.pose;
-    const [cx, cy] = boxCentre(box);
-    const dx = x + cx - controls.target.x;
-    const dy = y + cy + controls.target.z;
-    const far = Math.hypot(dx, dy);
-    // A view panned away by hand is left where it was put.
-    if (isTouched.current || far <= LEASH * size) return;
-    const share = (far - LEASH * size) / far;
-    work.set(dx * share, 0, -dy * share);
+    bodyPlace(box, frame.instant.pose, work).add(anchor.current).sub(controls.target);
+    // Up and down the eye stays: a step is no walk.
+    work.y = 0;
+    const far = work.length();
+    if (far <= LEASH * size) return;
+    work.multiplyScalar((far - LEASH * size) / far);
     controls.target.add(work);
     camera.position.add(work);
     controls.update();
   }, -0.5);
+}
 
+/** The eye: framed on load and when asked, moved by hand between, and led along when the body walks away. */
+export function Viewpoint({ ask }: { readonly ask: ViewAsk }) {
+  const eye = useEye();
+  const isTouched = useRef(false);
+  const pressed = useRef(new Vector3());
+  const anchor = useRef(new Vector3());
+  const { box, frame } = useStage();
+  const look = useLook(eye, anchor);
+  useFreeMiddle(eye);
+  useFirstLook(eye, look, isTouched);
+  useAsked(eye, look, ask, isTouched);
+  useLeash(eye, anchor);
   return (
     <OrbitControls
       makeDefault
       enableDamping={false}
       zoomSpeed={0.8}
-      onStart={() => pressed.current.copy(camera.position)}
+      onStart={() => pressed.current.copy(eye.camera.position)}
       onEnd={() => {
         // A tap moves nothing and is no wish to look from elsewhere.
-        if (pressed.current.distanceTo(camera.position) > 1e-9) isTouched.current = true;
+        if (!eye.controls || pressed.current.distanceTo(eye.camera.position) < 1e-9) return;
+        isTouched.current = true;
+        anchor.current.copy(eye.controls.target).sub(bodyPlace(box, frame.instant.pose, work));
       }}
     />
   );

@@ -39,7 +39,7 @@ const tell = (note: DragNote | undefined): void => {
 };
 
 /** A handle's value in words: its name, the number in the unit chosen for it, and the unit. */
-export const describeValue = (handle: Pick<Handle, 'info'>, value: number): string =>
+const describeValue = (handle: Pick<Handle, 'info'>, value: number): string =>
   `${handle.info.label} ${formatQuantity(value, handle.info.dimension, useSession.getState().units[handle.info.dimension], 4)}`;
 
 /** The nearest value a handle may take. */

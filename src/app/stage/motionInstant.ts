@@ -37,10 +37,6 @@ export const createInstant = (gyros: number, legs: number): Instant => ({
   waterSlope: 0,
 });
 
-/** Length of a motion in s, from its first sample to its last. */
-export const motionLength = (motion: Motion): number =>
-  motion.samples > 1 ? motion.time[motion.samples - 1] - motion.time[0] : 0;
-
 /** Between two values; beside a value that is not a number the nearer of the two stands as it is. */
 function between(a: number, b: number, share: number): number {
   if (Number.isNaN(a) || Number.isNaN(b)) return share < 0.5 ? a : b;

@@ -18,13 +18,28 @@ export interface Palette {
   readonly cargo: Color;
   readonly gimbal: Color;
   readonly water: Color;
+  readonly waterline: Color;
   readonly marks: Readonly<Record<MarkedQuantity, Color>>;
 }
 
 /** What only the stage has a colour for. */
 const OWN = {
-  light: { chosen: '#0b7a72', body: '#efede6', cargo: '#c9d3cd', gimbal: '#aab4b7', water: '#6f9fb2' },
-  dark: { chosen: '#5fd3c4', body: '#75848d', cargo: '#7f938e', gimbal: '#98a5ac', water: '#4f8397' },
+  light: {
+    chosen: '#0b7a72',
+    body: '#efede6',
+    cargo: '#c9d3cd',
+    gimbal: '#aab4b7',
+    water: '#6f9fb2',
+    waterline: '#1b6480',
+  },
+  dark: {
+    chosen: '#5fd3c4',
+    body: '#75848d',
+    cargo: '#7f938e',
+    gimbal: '#98a5ac',
+    water: '#4f8397',
+    waterline: '#a5dcef',
+  },
 } as const;
 
 /** Custom properties of the page that the stage follows, where the page has them. */
@@ -51,7 +66,7 @@ function readColour(probe: HTMLElement, property: string, fallback: string): Col
   return new Color(`rgb(${r}, ${g}, ${b})`);
 }
 
-export function readPalette(isDark: boolean): Palette {
+function readPalette(isDark: boolean): Palette {
   const theme = isDark ? 'dark' : 'light';
   const page = PAGE_COLOURS[theme];
   const probe = document.body.appendChild(document.createElement('span'));
@@ -70,6 +85,7 @@ export function readPalette(isDark: boolean): Palette {
     cargo: new Color(own.cargo),
     gimbal: new Color(own.gimbal),
     water: new Color(own.water),
+    waterline: new Color(own.waterline),
     marks: {
       momentum: new Color(QUANTITY_MARKS.momentum[theme]),
       torque: new Color(QUANTITY_MARKS.torque[theme]),

@@ -4,6 +4,7 @@ import { type Evaluated, stream } from '../state/stream';
 import { motionScales, type QuantityScales } from './arrowScale';
 import { type Box, boxDiagonal, rigBox } from './bodyPlaces';
 import { isDragging } from './dragging';
+import { rotateInto } from './legPose';
 import { createInstant, type Instant, leanOf, readInstant } from './motionInstant';
 import type { Palette } from './palette';
 import { restInstant } from './restInstant';
@@ -28,16 +29,24 @@ const fits = (rig: Rig, shown: Evaluated): boolean =>
 /** Where body and feet stood when nothing was being dragged. */
 const held = { pose: new Float64Array(7), feet: new Float64Array(0) };
 
-/** What is dragged must not walk, or fall, away from under the hand: while it is, body and feet stay put. */
-function holdWhileDragging({ pose, feet }: Instant): void {
+/**
+ * What is dragged must not walk, or fall, away from under the hand: while it is, body and feet stay put and the
+ * centre of mass goes to where the changed rig has it in the body. Returns whether they were held.
+ */
+function holdWhileDragging(instant: Instant, centreOfMass: readonly [number, number, number]): boolean {
+  const { pose, feet } = instant;
   if (held.feet.length !== feet.length) held.feet = new Float64Array(feet.length);
   else if (isDragging()) {
     pose.set(held.pose);
     feet.set(held.feet);
-    return;
+    rotateInto(pose, ...centreOfMass, instant.centreOfMass);
+    for (let axis = 0; axis < 3; axis++) instant.centreOfMass[axis] += pose[axis];
+    instant.centreOfPressure.fill(Number.NaN);
+    return true;
   }
   held.pose.set(pose);
   held.feet.set(feet);
+  return false;
 }
 
 /** A reader of the instants of one motion for one rig; at rest while there is no motion that fits the rig. */
@@ -54,9 +63,10 @@ export function createStageFrame(rig: Rig, shown: Evaluated | undefined): StageF
     hasFallen: false,
     read: (): void => {
       readInstant(motion, stream.seconds, instant);
-      holdWhileDragging(instant);
+      const isHeld = holdWhileDragging(instant, shown.centreOfMass);
       frame.hasFallen =
-        leanOf(instant.pose) > FALLEN || (outcome.kind === 'falls' && stream.seconds >= outcome.at);
+        (!isHeld && outcome.kind === 'falls' && stream.seconds >= outcome.at) ||
+        leanOf(instant.pose) > FALLEN;
     },
   };
   frame.read();

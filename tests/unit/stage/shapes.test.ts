@@ -1,7 +1,8 @@
 import type { BufferGeometry } from 'three';
 import { describe, expect, it } from 'vitest';
 import { boltRadius, rigBox, sectionOutline, wheelExtent } from '../../../src/app/stage/bodyPlaces';
-import { arcLozenges, arcTube, sectorGeometry, wheelGeometry } from '../../../src/app/stage/shapes';
+import { arcLozenges, arcTube, sectorGeometry } from '../../../src/app/stage/shapes';
+import { wheelGeometry } from '../../../src/app/stage/wheelShape';
 import { DEMONSTRATIONS, SKIFF, STRIDER, type WheelPart } from '../../../src/core/rig';
 import { expectClose } from '../../support/closeTo';
 
