@@ -75,7 +75,7 @@ export function nameLaw(control: Control, isReactionWheel: boolean): NamedLaw {
           leanRate: control.leanRate,
           tilt: control.tilt,
           tiltRate: control.tiltRate,
-          trim: 0,
+          trim: control.trim,
         },
       };
     case 'pidTilt':

@@ -78,6 +78,7 @@ export const ControlSchema = v.variant('kind', [
     leanRate: gain('Gain on lean rate'),
     tilt: gain('Gain on tilt'),
     tiltRate: gain('Gain on tilt rate'),
+    trim: gain('Gain on tilt gathered'),
   }),
   v.strictObject({ kind: v.literal('pidTilt'), kp: gain('P'), ki: gain('I'), kd: gain('D') }),
   v.strictObject({ kind: v.literal('pidTiltRate'), kp: gain('P'), ki: gain('I'), kd: gain('D') }),

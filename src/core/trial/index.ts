@@ -1,3 +1,4 @@
+export * from './build';
 export * from './cures';
 export * from './evaluate';
 export * from './evaluation';
@@ -5,4 +6,3 @@ export * from './motion';
 export { MOVING_BASE, movingBaseCourse } from './movingBase';
 export { PlanPlace } from './planPlace';
 export { type PreviewLaw, previewLaw } from './previewLaw';
-export { type Doubt, USUAL_DOUBT } from './previewRun';

@@ -1,14 +1,23 @@
 /** What the firmware does in a preview: follow the plan, answer the lean, or neither. */
 import {
+  assembleTiltPlant,
+  buildController,
   type Controller,
   createControllerWork,
   designRegulator,
-  type RollTiltPlant,
+  nameLaw,
+  type PlanColumns,
   resetController,
   stepController,
 } from '../control';
 import { inertiaAbout, STANDARD_GRAVITY } from '../physics';
-import { type AxisSchedule, type PlanSetting, pivotHeight } from '../planning';
+import {
+  type ArrayAxis,
+  type AxisArray,
+  type AxisSchedule,
+  type PlanSetting,
+  pivotHeight,
+} from '../planning';
 import type { Switches } from './evaluation';
 
 /** Damping and speed asked of a body that has begun to tip off its feet, its toppling rate being 1. */
@@ -22,8 +31,18 @@ export interface PreviewLaw {
   readonly isArrayOn: boolean;
   /** Tilt of the axis planned at time 0, rad. */
   readonly startTilt: number;
-  /** Advances one loop tick. `isFlat`: the feet stand flat, so that the lean says nothing. */
-  readonly tick: (time: number, lean: number, leanRate: number, isFlat: boolean, dt: number) => void;
+  /**
+   * Advances one loop tick. `isFlat`: the feet stand flat, so that the lean says nothing. `gained`: N*m*s that
+   * reaction wheels have taken up since the start.
+   */
+  readonly tick: (
+    time: number,
+    lean: number,
+    leanRate: number,
+    isFlat: boolean,
+    dt: number,
+    gained?: number,
+  ) => void;
   /** Tilt commanded for the axis now, rad. */
   readonly command: () => number;
   /** Torque commanded on the body by reaction wheels now, N*m. */
@@ -50,13 +69,17 @@ function columnAt(plan: Planned, values: Float64Array, time: number): number {
 }
 
 /**
- * The law of a preview for the switches set. Off: the array rests locked at zero tilt. Without a plan the
- * schedule is all zero.
+ * The law of a run for the switches set. Off: the array rests locked at zero tilt. Without a plan the schedule is
+ * all zero.
+ *
+ * @param computed  the controller to use where the rig leaves its gains to be computed; without one, gains that
+ *                  take the servo as quick, worked out on the spot
  */
 export function previewLaw(
   setting: PlanSetting,
   schedules: readonly AxisSchedule[],
   switches: Switches,
+  computed?: Controller,
 ): PreviewLaw {
   const at = setting.axes.findIndex(({ axis }) => axis === 'roll');
   const axis = setting.axes[at];
@@ -72,10 +95,29 @@ export function previewLaw(
     interval: setting.problem.step,
     isCyclic: setting.course.isCyclic,
   };
-  if (axis.array.kind === 'reaction') return reactionLaw(setting, plan, switches.isFeedbackOn);
+  const controller = switches.isFeedbackOn ? controllerOf(setting, axis, computed) : undefined;
+  if (axis.array.kind === 'reaction') return reactionLaw(axis.array, plan, controller);
   return setting.kind === 'firm'
-    ? tippingLaw(setting, plan, switches.isFeedbackOn)
-    : leaningLaw(setting, plan, switches.isFeedbackOn);
+    ? tippingLaw(axis.array, plan, controller)
+    : leaningLaw(axis.array, plan, controller);
+}
+
+/** What answers the lean: the law the rig names, the one computed for it, or quick gains in its place. */
+function controllerOf(
+  setting: PlanSetting,
+  axis: ArrayAxis,
+  computed: Controller | undefined,
+): Controller | undefined {
+  const isReaction = axis.array.kind === 'reaction';
+  const named = nameLaw(setting.compiled.rig.control, isReaction);
+  if (named.kind === 'given') {
+    // A law for the other kind of array, or for no servo at all, moves nothing here.
+    const suits = isReaction === (named.controller.kind === 'reactionWheel');
+    return suits && named.controller.kind !== 'passive' ? named.controller : undefined;
+  }
+  if (computed) return computed;
+  if (isReaction) return quickReaction(setting);
+  return setting.kind === 'firm' ? quickTipping(setting, axis) : quickLeaning(setting, axis);
 }
 
 const lockedLaw = (isArrayOn: boolean): PreviewLaw => ({
@@ -86,8 +128,9 @@ const lockedLaw = (isArrayOn: boolean): PreviewLaw => ({
   bodyTorque: () => 0,
 });
 
-/** Roll inertia and toppling stiffness of a legged body about the edge of a foot under it. */
-function tippingBody(setting: PlanSetting): { inertia: number; stiffness: number } {
+/** Roll inertia and toppling stiffness of a body about the line it leans about, or would tip about. */
+function fallingBody(setting: PlanSetting): { inertia: number; stiffness: number } {
+  if (setting.kind === 'lean') return { inertia: setting.inertia, stiffness: -setting.stiffness };
   const { whole } = setting.compiled;
   return {
     inertia: inertiaAbout(whole, [whole.com[0], whole.com[1], 0])[0],
@@ -95,91 +138,98 @@ function tippingBody(setting: PlanSetting): { inertia: number; stiffness: number
   };
 }
 
-/**
- * While the feet are flat the gimbals follow the plan, going back to it slowly after a save; once the body
- * tips, lean and lean rate drive the tilt rate so that it comes back as a damped swing.
- */
-function tippingLaw(setting: PlanSetting, plan: Planned, isFeedbackOn: boolean): PreviewLaw {
-  const array = setting.axes[0]?.array;
-  if (!array) return lockedLaw(true);
-  const { inertia, stiffness } = tippingBody(setting);
+/** Lean and lean rate drive the tilt rate so that a body that has begun to tip comes back as a damped swing. */
+function quickTipping(setting: PlanSetting, { array }: ArrayAxis): Controller {
+  const { inertia, stiffness } = fallingBody(setting);
   const speed = TIPPING_SPEED * Math.sqrt(stiffness / inertia);
-  const onLean = (stiffness + inertia * speed * speed) / array.momentum;
-  const onRate = (2 * TIPPING_DAMPING * inertia * speed) / array.momentum;
+  return {
+    kind: 'pidTiltRate',
+    kp: (stiffness + inertia * speed * speed) / array.momentum,
+    ki: 0,
+    kd: (2 * TIPPING_DAMPING * inertia * speed) / array.momentum,
+  };
+}
+
+/** Lean and lean rate answered by the motor as a damped swing. */
+function quickReaction(setting: PlanSetting): Controller {
+  const { inertia, stiffness } = fallingBody(setting);
+  const speed = TIPPING_SPEED * Math.sqrt(Math.abs(stiffness) / inertia);
+  return {
+    kind: 'reactionWheel',
+    lean: Math.max(0, stiffness) + inertia * speed * speed,
+    leanRate: 2 * TIPPING_DAMPING * inertia * speed,
+    speed: 0,
+  };
+}
+
+/** Sizes of lean, tilt and tilt rate that are worth the same in the quick regulator. */
+const LEAN_WORTH = 0.02;
+const TILT_WORTH = 0.5;
+const RATE_WORTH = 2;
+
+function quickLeaning(setting: PlanSetting, axis: ArrayAxis): Controller | undefined {
+  const { rig } = setting.compiled;
+  if (!axis.servo) return undefined;
+  const plant = assembleTiltPlant(
+    {
+      ...fallingBody(setting),
+      damping: rig.footing.kind === 'float' ? rig.footing.linearDamping : 0,
+      momentum: axis.array.momentum,
+      lineHeight: pivotHeight(setting.compiled),
+      gravity: STANDARD_GRAVITY,
+    },
+    axis.servo,
+    rig.sensing,
+  );
+  const found = designRegulator(plant, {
+    lean: 1 / LEAN_WORTH ** 2,
+    leanRate: 0,
+    tilt: 1 / TILT_WORTH ** 2,
+    tiltRate: 1 / RATE_WORTH ** 2,
+  });
+  return found && buildController('feedback', [...found, 0, 0]);
+}
+
+/**
+ * While the feet are flat the gimbals follow the plan, going back to it slowly after a save; once the body tips,
+ * the controller adds to the plan.
+ */
+function tippingLaw(array: AxisArray, plan: Planned, controller: Controller | undefined): PreviewLaw {
+  const work = createControllerWork();
   let off = 0;
+  let wasFlat = true;
   let command = columnAt(plan, plan.tilt, 0);
   return {
     isArrayOn: true,
     startTilt: command,
     tick: (time, lean, leanRate, isFlat, dt) => {
-      if (!isFeedbackOn) off = 0;
-      else if (isFlat) off *= Math.exp(-dt / RECENTRE_TIME);
-      else off += (onLean * lean + onRate * leanRate) * dt;
       const planned = columnAt(plan, plan.tilt, time);
-      command = Math.min(array.tiltMax, Math.max(array.tiltMin, planned + off));
-      off = command - planned;
+      const least = array.tiltMin - planned;
+      const most = array.tiltMax - planned;
+      if (!controller) off = 0;
+      else if (isFlat) off *= Math.exp(-dt / RECENTRE_TIME);
+      else {
+        if (wasFlat) resetController(work, off);
+        off = stepController(controller, work, lean, leanRate, 0, least, most, dt);
+      }
+      wasFlat = isFlat;
+      off = Math.min(most, Math.max(least, off));
+      command = planned + off;
     },
     command: () => command,
     bodyTorque: () => 0,
   };
 }
 
-/** The linear plant that gains are worked out for. */
-function plantOf(setting: Extract<PlanSetting, { kind: 'lean' }>): RollTiltPlant {
-  const { rig } = setting.compiled;
-  const axis = setting.axes[0];
-  const servo = axis?.servo;
-  return {
-    actuator: 'tilt',
-    inertia: setting.inertia,
-    stiffness: -setting.stiffness,
-    damping: rig.footing.kind === 'float' ? rig.footing.linearDamping : 0,
-    momentum: axis?.array.momentum ?? 1,
-    servoLag: servo?.lag ?? 0,
-    delay: (servo?.delay ?? 0) + rig.sensing.loopDelay,
-    sampleTime: 1 / rig.sensing.loopRate,
-    sensorHeight: rig.sensing.height - pivotHeight(setting.compiled),
-    gravity: STANDARD_GRAVITY,
-  };
+/** The controller of a body that leans, its plan put in front of it where the law can take one. */
+export function plannedController(plan: PlanColumns, controller: Controller | undefined): Controller {
+  if (controller && (controller.kind === 'pidTilt' || controller.kind === 'pidTiltRate')) return controller;
+  const none = { lean: 0, leanRate: 0, tilt: 0, tiltRate: 0, trim: 0 };
+  return { kind: 'planned', plan, gains: controller?.kind === 'feedback' ? controller : none };
 }
 
-/** Sizes of lean, tilt and tilt rate that are worth the same in the regulator of a preview. */
-const LEAN_WORTH = 0.02;
-const TILT_WORTH = 0.5;
-const RATE_WORTH = 2;
-
-function leaningLaw(
-  setting: Extract<PlanSetting, { kind: 'lean' }>,
-  plan: Planned,
-  isFeedbackOn: boolean,
-): PreviewLaw {
-  const array = setting.axes[0]?.array;
-  if (!array) return lockedLaw(true);
-  const { control } = setting.compiled.rig;
-  const found = designRegulator(plantOf(setting), {
-    lean: 1 / LEAN_WORTH ** 2,
-    leanRate: 0,
-    tilt: 1 / TILT_WORTH ** 2,
-    tiltRate: 1 / RATE_WORTH ** 2,
-  });
-  const none = { lean: 0, leanRate: 0, tilt: 0, tiltRate: 0, trim: 0 };
-  const computed = found
-    ? { ...none, lean: found[0] as number, leanRate: found[1] as number, tilt: found[2] as number }
-    : none;
-  const gains = control.kind === 'feedback' ? { ...control, trim: 0 } : computed;
-  const planned: Controller = {
-    kind: 'planned',
-    plan: {
-      step: plan.interval,
-      isCyclic: plan.isCyclic,
-      tilt: plan.tilt,
-      lean: plan.lean,
-      leanRate: plan.leanRate,
-    },
-    gains: isFeedbackOn ? gains : none,
-  };
-  const controller: Controller =
-    isFeedbackOn && (control.kind === 'pidTilt' || control.kind === 'pidTiltRate') ? control : planned;
+function leaningLaw(array: AxisArray, plan: Planned, feedback: Controller | undefined): PreviewLaw {
+  const controller = plannedController({ ...plan, step: plan.interval }, feedback);
   const work = createControllerWork();
   resetController(work, 0);
   let command = 0;
@@ -194,23 +244,17 @@ function leaningLaw(
   };
 }
 
-/** A reaction wheel: the planned torque, and lean and lean rate answered as a damped swing. */
-function reactionLaw(setting: PlanSetting, plan: Planned, isFeedbackOn: boolean): PreviewLaw {
-  const { inertia, stiffness } =
-    setting.kind === 'lean'
-      ? { inertia: setting.inertia, stiffness: -setting.stiffness }
-      : tippingBody(setting);
-  const speed = TIPPING_SPEED * Math.sqrt(Math.abs(stiffness) / inertia);
-  const most = setting.axes[0]?.array.torque ?? 0;
+/** A reaction wheel: the planned torque, and what the controller answers. */
+function reactionLaw(array: AxisArray, plan: Planned, controller: Controller | undefined): PreviewLaw {
+  const most = array.torque;
+  const work = createControllerWork();
   let torque = 0;
   return {
     isArrayOn: true,
     startTilt: 0,
-    tick: (time, lean, leanRate) => {
-      const asked =
-        -(Math.max(0, stiffness) + inertia * speed * speed) * lean -
-        2 * TIPPING_DAMPING * inertia * speed * leanRate;
-      const wanted = columnAt(plan, plan.torque, time) + (isFeedbackOn ? asked : 0);
+    tick: (time, lean, leanRate, _isFlat, dt, gained = 0) => {
+      const onWheel = controller ? stepController(controller, work, lean, leanRate, gained, 0, 0, dt) : 0;
+      const wanted = columnAt(plan, plan.torque, time) - onWheel;
       torque = Math.min(most, Math.max(-most, wanted));
     },
     command: () => 0,

@@ -1,9 +1,13 @@
-/** What one preview run holds, and how its gimbals are moved and read. */
+/** What one run holds, and how its gimbals are moved and read. */
 import {
+  type Controller,
   createServoWork,
   mountServo,
+  readCommand,
   resetServo,
+  SERVO_INPUT,
   SERVO_STATE,
+  SERVO_TARGET,
   type ServoModel,
   type ServoWork,
   sendCommand,
@@ -11,31 +15,33 @@ import {
 } from '../control';
 import {
   arrayTorque,
+  type CompiledRig,
   compileStar,
   createRk4Work,
   createStarWork,
   type Derivative,
   type Rk4Work,
   restState,
+  STANDARD_GRAVITY,
   type StarModel,
   type StarWork,
   starDerivative,
 } from '../physics';
-import { type AxisSchedule, type GimbalGroup, gimbalGroups, type PlanSetting } from '../planning';
+import {
+  type AxisSchedule,
+  type GimbalGroup,
+  gimbalGroups,
+  type PlanSetting,
+  pivotHeight,
+} from '../planning';
+import type { Gyro } from '../rig';
+import { type Build, builtCarrier, builtFall, builtServo } from './build';
 import type { Switches } from './evaluation';
+import { type FirmOutside, firmOutside } from './firmOutside';
 import { MOVING_BASE, movingBaseCourse } from './movingBase';
 import { PlanPlace } from './planPlace';
 import { type PreviewLaw, previewLaw } from './previewLaw';
-
-/** How the rig on the bench is taken to differ from the drawing. Usual for careful work, common practice. */
-export interface Doubt {
-  /** m, centre of mass to the left of where it is drawn. */
-  readonly centreAcross: number;
-  /** Wheel speed over the one asked for. */
-  readonly wheelSpeed: number;
-}
-
-export const USUAL_DOUBT: Doubt = { centreAcross: 0.004, wheelSpeed: 0.97 };
+import type { Sense } from './sensing';
 
 interface Actuator {
   readonly group: GimbalGroup;
@@ -45,10 +51,11 @@ interface Actuator {
   readonly work: ServoWork;
 }
 
-/** Everything one preview run holds. */
+/** Everything one run holds. */
 export interface PreviewRun {
   readonly setting: PlanSetting;
-  readonly doubt: Doubt;
+  readonly build: Build;
+  readonly sense: Sense;
   readonly law: PreviewLaw;
   readonly model: StarModel;
   readonly work: StarWork;
@@ -57,15 +64,26 @@ export interface PreviewRun {
   readonly derivative: Derivative;
   readonly rk4: Rk4Work;
   readonly actuators: readonly Actuator[];
+  /** Carries the torque of reaction wheels through the delay of the loop. */
+  readonly motorLine: { readonly servo: ServoModel; readonly work: ServoWork };
   /** Signs of reaction wheels along the roll axis; 0 for any other gyro. */
   readonly motorSigns: Float64Array;
   /** n, N*m*s: each wheel's momentum as it turns. */
   readonly momentum: Float64Array;
+  readonly startMomentum: Float64Array;
+  /** kg*m^2 that a blow meets, about the line a leaning body turns about, as built. */
+  readonly leanInertia: number;
+  /** N*m per unit of sin(roll): weight raised above where a float's righting curve has it. */
+  readonly heel: number;
   /** Base while the legs walk; undefined where nothing but the gimbals moves on the body. */
   readonly base: Float64Array | undefined;
   readonly baseNow: Float64Array;
   readonly planted: Float64Array;
   readonly place: PlanPlace;
+  /** Disturbances on feet, which the plan of a gait does not know; undefined for a body that leans. */
+  readonly outside: FirmOutside | undefined;
+  /** What hits the body at once, in order of time: N*m*s about the line it leans about. */
+  readonly jumps: readonly { readonly time: number; readonly roll: number }[];
   readonly tilt: Float64Array;
   readonly rate: Float64Array;
   /** 3, N*m, body frame: now, and the mean since the last sample (servos move in frames, so one instant misleads). */
@@ -79,56 +97,57 @@ export interface PreviewRun {
 
 const noRate = new Float64Array(3);
 
+/** How a run differs from a preview. */
+export interface RunChoice {
+  readonly build: Build;
+  readonly sense: Sense;
+  /** For gains that the rig leaves to be computed. */
+  readonly controller?: Controller | undefined;
+  /** Shoves that no plan knows of. */
+  readonly surprises?: readonly Surprise[];
+  /** s */
+  readonly length: number;
+  /** Hz at which commands are sent. */
+  readonly commandRate: number;
+}
+
+/** A shove out of the blue: N*s to the left, m above the ground. */
+export interface Surprise {
+  readonly time: number;
+  readonly impulse: number;
+  readonly height: number;
+}
+
 /** Makes a run ready at time 0, gimbals where the law has them. */
 export function prepareRun(
   setting: PlanSetting,
   schedules: readonly AxisSchedule[],
   switches: Switches,
-  doubt: Doubt,
-  commandRate: number,
+  choice: RunChoice,
 ): PreviewRun {
   const { compiled } = setting;
-  const { rig } = compiled;
-  // Roll alone is previewed: feet tip, and a point pivots, about a line that runs forward.
-  const { footing } = rig;
-  const model =
-    footing.kind === 'firm' || footing.kind === 'point'
-      ? compileStar({
-          ...compiled.star,
-          footing: {
-            kind: 'edge',
-            point: footing.kind === 'point' ? footing.position : [0, 0, 0],
-            axis: [1, 0, 0],
-          },
-        })
-      : compiled.model;
+  const { build } = choice;
+  const model = rollStar(compiled, build);
   const state = restState(model);
   const n = model.gimbals;
   const momentum = new Float64Array(n);
   for (let i = 0; i < n; i++) {
-    const speed = compiled.speeds[i] * doubt.wheelSpeed;
+    const speed = compiled.speeds[i] * build.wheelSpeed;
     state[model.wheelSpeedAt + i] = speed;
     momentum[i] = speed * (compiled.wheels[i]?.spinInertia ?? 0);
   }
   const roll = setting.axes.find(({ axis }) => axis === 'roll');
+  const isReaction = roll?.array.kind === 'reaction';
   const signOf = (gyro: number): number =>
     roll?.followers.find((follower) => follower.gyro === gyro)?.sign ?? 0;
-  const isReaction = roll?.array.kind === 'reaction';
-  const law = previewLaw(setting, schedules, switches);
-  const actuators = gimbalGroups(compiled).map((group): Actuator => {
-    const { min, max } = rig.array.gyros[group.leader]?.tilt ?? { min: 0, max: 0 };
-    const inertia = group.members.reduce((sum, { index }) => sum + model.hingeInertia[index], 0);
-    const servo = mountServo(group.servo, { gimbalInertia: inertia, tiltMin: min, tiltMax: max });
-    const work = createServoWork(servo, commandRate, rig.sensing.loopDelay);
-    const sign = isReaction ? 0 : signOf(group.leader);
-    resetServo(work, sign * law.startTilt);
-    return { group, sign, servo, work };
-  });
+  const law = previewLaw(setting, schedules, switches, choice.controller);
   const work = createStarWork(model);
   const effort = new Float64Array(model.effortSize);
+  const outside = setting.kind === 'firm' ? firmOutside(setting, choice.length) : undefined;
   const run: PreviewRun = {
     setting,
-    doubt,
+    build,
+    sense: choice.sense,
     law,
     model,
     work,
@@ -136,13 +155,19 @@ export function prepareRun(
     effort,
     derivative: (_time, at, out) => starDerivative(model, work, at, effort, out),
     rk4: createRk4Work(model.stateSize),
-    actuators,
+    actuators: mountActuators(setting, model, law, choice, (gyro) => (isReaction ? 0 : signOf(gyro))),
+    motorLine: mountMotorLine(compiled, choice.commandRate),
     motorSigns: Float64Array.from({ length: n }, (_, i) => (isReaction ? signOf(i) : 0)),
     momentum,
-    base: setting.kind === 'firm' ? movingBaseCourse(rig, setting.course) : undefined,
+    startMomentum: momentum.slice(),
+    leanInertia: setting.kind === 'lean' ? builtFall(setting, build).inertia : 0,
+    heel: compiled.floating ? STANDARD_GRAVITY * compiled.whole.mass * build.centreUp : 0,
+    base: setting.kind === 'firm' ? movingBaseCourse(compiled.rig, setting.course) : undefined,
     baseNow: new Float64Array(MOVING_BASE),
     planted: new Float64Array(9),
     place: new PlanPlace(setting),
+    outside,
+    jumps: listJumps(setting, outside, choice),
     tilt: new Float64Array(n),
     rate: new Float64Array(n),
     torque: new Float64Array(3),
@@ -157,15 +182,129 @@ export function prepareRun(
   return run;
 }
 
+/** The star as built. Roll alone is run: feet tip, and a point pivots, about a line that runs forward. */
+function rollStar(compiled: CompiledRig, build: Build): StarModel {
+  const { footing } = compiled.rig;
+  const isTurned = footing.kind === 'firm' || footing.kind === 'point';
+  const isDrawn = build.mass === 1 && build.centreUp === 0;
+  if (!isTurned && isDrawn) return compiled.model;
+  return compileStar({
+    ...compiled.star,
+    base: isDrawn ? compiled.star.base : builtCarrier(compiled, build),
+    footing: isTurned
+      ? {
+          kind: 'edge',
+          point: footing.kind === 'point' ? footing.position : [0, 0, 0],
+          axis: [1, 0, 0],
+        }
+      : compiled.star.footing,
+  });
+}
+
+function mountActuators(
+  setting: PlanSetting,
+  model: StarModel,
+  law: PreviewLaw,
+  { build, commandRate }: RunChoice,
+  signOf: (gyro: number) => number,
+): readonly Actuator[] {
+  const { compiled } = setting;
+  const { gyros } = compiled.rig.array;
+  const { loopDelay, loopJitter } = compiled.rig.sensing;
+  return gimbalGroups(compiled).map((group): Actuator => {
+    const { min, max } = gyros[group.leader]?.tilt ?? { min: 0, max: 0 };
+    const inertia = group.members.reduce((sum, { index }) => sum + model.hingeInertia[index], 0);
+    const gimbals = group.members.map(({ index }) => (gyros[index] as Gyro).gimbal);
+    const servo = mountServo(builtServo(group.servo, gimbals, build), {
+      gimbalInertia: inertia,
+      tiltMin: min,
+      tiltMax: max,
+    });
+    const work = createServoWork(servo, commandRate, loopDelay + loopJitter);
+    const sign = signOf(group.leader);
+    resetServo(work, sign * law.startTilt);
+    return { group, sign, servo, work };
+  });
+}
+
+/** The way from loop to motors, used for its delay alone. */
+function mountMotorLine({ rig }: CompiledRig, commandRate: number): PreviewRun['motorLine'] {
+  const servo: ServoModel = {
+    stallTorque: 1,
+    noLoadSpeed: 1,
+    torqueLimit: 1,
+    delay: 0,
+    lag: 0,
+    backlash: 0,
+    deadBand: 0,
+    resolution: 0,
+    updateRate: 0,
+    gimbalInertia: 1,
+    rotorInertia: 0,
+    tiltMin: 0,
+    tiltMax: 0,
+  };
+  const { loopDelay, loopJitter } = rig.sensing;
+  return { servo, work: createServoWork(servo, commandRate, loopDelay + loopJitter) };
+}
+
+function listJumps(
+  setting: PlanSetting,
+  outside: FirmOutside | undefined,
+  { build, surprises = [] }: RunChoice,
+): PreviewRun['jumps'] {
+  const known = outside ? outside.jumps : setting.disturbances.jumps;
+  const height = pivotHeight(setting.compiled);
+  return [
+    ...known.map(({ time, roll }) => ({ time, roll: roll * build.shove })),
+    ...surprises.map((shove) => ({
+      time: shove.time,
+      roll: -(shove.height - height) * shove.impulse * build.shove,
+    })),
+  ].sort((a, b) => a.time - b.time);
+}
+
+/** Sends the law's commands; they are in force `late` seconds on, servo delay apart. */
+export function sendCommands(run: PreviewRun, late: number): void {
+  for (const { sign, servo, work } of run.actuators) sendCommand(servo, work, sign * run.law.command(), late);
+  sendCommand(run.motorLine.servo, run.motorLine.work, run.law.bodyTorque(), late);
+}
+
 export function moveServos(run: PreviewRun, leanRate: number, dt: number): void {
-  const { loopDelay } = run.setting.compiled.rig.sensing;
-  for (const { group, sign, servo, work } of run.actuators) {
+  for (const { group, servo, work } of run.actuators) {
     const tilt = work.state[SERVO_STATE.tilt];
-    sendCommand(servo, work, sign * run.law.command(), loopDelay);
     // The roll rate turns the wheels; the group's servo feels the change of its roll momentum with tilt.
     const slope = group.sine[0] * Math.cos(tilt) - group.cosine[0] * Math.sin(tilt);
-    stepServo(servo, work, run.doubt.wheelSpeed * slope * leanRate, dt);
+    stepServo(servo, work, run.build.wheelSpeed * slope * leanRate, dt);
   }
+}
+
+/** Torques on reaction wheels over the coming step: what the loop asked, unless a wheel runs at its motor's top speed. */
+export function driveWheels(run: PreviewRun, dt: number): void {
+  const { model, state, effort, motorLine, setting } = run;
+  const { rig } = setting.compiled;
+  const s = motorLine.work.state;
+  s[SERVO_INPUT.dt] = dt;
+  readCommand(motorLine.servo, motorLine.work);
+  s[SERVO_STATE.time] += dt;
+  const asked = s[SERVO_TARGET];
+  const wheels = run.motorSigns.reduce((sum, sign) => sum + Math.abs(sign), 0);
+  for (let i = 0; i < model.gimbals; i++) {
+    const motor = rig.array.gyros[i]?.motor;
+    const torque = wheels > 0 ? (-run.motorSigns[i] * asked) / wheels : 0;
+    const top = (motor?.velocityConstant ?? 0) * rig.power.cells * rig.power.cellVoltage;
+    const speed = state[model.wheelSpeedAt + i];
+    effort[model.gimbals + i] = Math.abs(speed) >= top && torque * speed > 0 ? 0 : torque;
+  }
+}
+
+/** N*m*s about roll that reaction wheels have taken up since the start. */
+export function gainedMomentum(run: PreviewRun): number {
+  let sum = 0;
+  for (let i = 0; i < run.motorSigns.length; i++) {
+    if (run.motorSigns[i] !== 0) sum += run.motorSigns[i] * (run.momentum[i] - run.startMomentum[i]);
+  }
+  return sum;
 }
 
 /** Tilts and rates of every gimbal from its servo, and the tilt accelerations that the star is to take. */
