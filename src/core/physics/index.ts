@@ -32,6 +32,8 @@ export * from './spin';
 export * from './spinCurve';
 export * from './spinDriveFigures';
 export * from './spinFigures';
+export * from './spinSheet';
+export * from './spinStanding';
 export * from './stability';
 export * from './starDynamics';
 export * from './starModel';

@@ -1,111 +1,32 @@
-/** The Spin up station's work on one gyro: everything that follows from its wheel, bearings, drive and housing. */
+/** The Spin up station's work on one gyro and on a rig: everything that follows from wheel, bearings, drive and housing. */
 import { type Gyro, MATERIALS, type Power, type Rig } from '../rig';
-import { permissibleUnbalance } from './balanceGrade';
-import {
-  type BearingLoad,
-  bearingLoads,
-  equivalentDynamicLoad,
-  lifeSeconds,
-  staticSafety,
-  swingingMeanLoad,
-} from './bearings';
 import { type Caution, cautionsFor } from './cautions';
-import { compileDrive, type DriveModel, type HoldOutcome, holdSpeed, packEnergy, runTime } from './drive';
+import { packEnergy, runTime } from './drive';
 import { combineBodies, rigPieces } from './massProperties';
 import { type SensorShake, sensorShake } from './sensorShake';
 import { type Braking, brakeWheel, type SpinDown, type SpinUpOutcome, spinDown, spinUp } from './spinCurve';
-import { type WheelBurst, wheelBurst } from './wheelBurst';
-import { type WheelDragParts, type WheelEnvelope, wheelDragParts, wheelEnvelope } from './wheelDrag';
-import { type WheelFault, type WheelProperties, wheelProperties } from './wheelProperties';
-import { USUAL_SPEED_SQUARED_FACTOR, type WheelStress, wheelStress } from './wheelStress';
-import { airAt, type Windage, windage } from './windage';
+import {
+  BODY_RATE,
+  gimbalRateOf,
+  type SpinChoices,
+  type SpinStanding,
+  standGyro,
+  usualSpinChoices,
+} from './spinStanding';
+import type { WheelFault } from './wheelProperties';
 
-/** What is not in the rig, with usual starts. */
-export interface SpinChoices {
-  /** Allowable stress over stress to keep. */
-  readonly factor: number;
-  /** N, axial preload of the bearings. */
-  readonly preload: number;
-  /** A, braking current when it is stopped; the controller's limit at most. */
-  readonly brakeCurrent: number;
-}
-
-export const usualSpinChoices = (gyro: Gyro): SpinChoices => ({
-  factor: USUAL_SPEED_SQUARED_FACTOR,
-  preload: 0,
-  brakeCurrent: gyro.motor.currentLimit / 2,
-});
-
-export interface SpinReport {
-  readonly gyro: Gyro;
-  readonly choices: SpinChoices;
-  /** rad/s, greatest rate the gimbal turns the wheel at. */
-  readonly gimbalRate: number;
-  readonly wheel: WheelProperties;
-  readonly envelope: WheelEnvelope;
-  readonly stress: WheelStress;
-  readonly burst: WheelBurst;
-  /** kg*m^2/s. */
-  readonly momentum: number;
-  /** kg*m, the residual unbalance the grade permits. */
-  readonly unbalance: number;
-  /** Each of the two, wheel in the middle. */
-  readonly bearing: BearingLoad;
-  /** N, steady load that wears as the swinging one. */
-  readonly meanLoad: number;
-  /** s, L10 at running speed. */
-  readonly bearingLife: number;
-  readonly staticSafety: number;
-  /** With the gimbal swinging at its greatest rate: what holding speed has to meet. */
-  readonly drag: WheelDragParts;
-  /** With the gimbal at rest: what spinning up, coasting and braking meet. */
-  readonly restDrag: WheelDragParts;
-  readonly drive: DriveModel;
-  readonly hold: HoldOutcome;
+export interface SpinReport extends SpinStanding {
   readonly spinUp: SpinUpOutcome;
   readonly coast: SpinDown;
   readonly braking: Braking;
-  /** The same wheel in still open air, to show what the housing saves. */
-  readonly openAir: Windage;
-  readonly windage: Windage;
 }
 
 export type SpinOutcome =
   | { readonly kind: 'spun'; readonly report: SpinReport }
   | { readonly kind: 'refused'; readonly faults: readonly WheelFault[] };
 
-/** Rate at which a body that walks or rolls turns a locked or free wheel, rad/s; common practice. */
-const BODY_RATE = 2;
-
-/** The greatest rate a gyro's gimbal can reach, rad/s: its servo's no-load speed; the body's own rate without one. */
-export function gimbalRateOf(rig: Rig, gyro: Gyro): number {
-  const { drive } = gyro;
-  switch (drive.kind) {
-    case 'servo':
-      return drive.servo.noLoadSpeed;
-    case 'geared': {
-      const leader = rig.array.gyros[drive.leader];
-      return leader?.drive.kind === 'servo'
-        ? Math.abs(drive.ratio) * leader.drive.servo.noLoadSpeed
-        : BODY_RATE;
-    }
-    case 'free':
-    case 'locked':
-      return BODY_RATE;
-  }
-}
-
-/** Slower than a turn a minute, a wheel counts as at rest: a balance grade would allow it any unbalance. */
-const SLOWEST_SPEED = 0.1;
-
 /**
- * Everything the Spin up station says of one gyro at its running speed.
- *
- * @param gyro        wheel, motor, bearings and housing
- * @param power       battery; the wheel is taken as alone on it
- * @param gimbalRate  rad/s, greatest rate the spin axis is turned at
- * @param choices     what the rig does not hold
- * @returns           the report, or what cannot be a wheel
+ * Everything the Spin up station says of one gyro at its running speed; arguments as for `standGyro`.
  *
  * Cost: about 2 ms, most of it drag along the spin-up and down. Sources: with the formulas of each part.
  */
@@ -115,60 +36,21 @@ export function spinGyro(
   gimbalRate: number,
   choices: SpinChoices = usualSpinChoices(gyro),
 ): SpinOutcome {
-  const weighed = wheelProperties(gyro.wheel.parts);
-  if (weighed.kind === 'refused') return weighed;
-  const { wheel } = weighed;
-  const { bearing: part } = gyro;
-  const speed = gyro.speed < SLOWEST_SPEED ? 0 : gyro.speed;
-  const stressed = wheelStress(gyro.wheel.parts, speed, choices.factor);
-  if (stressed.kind === 'refused') return stressed;
-  const momentum = wheel.spinInertia * speed;
-  const unbalance = speed > 0 ? permissibleUnbalance(gyro.wheel.balanceGrade, speed, wheel.mass) : 0;
-  const [bearing] = bearingLoads({
-    mass: wheel.mass,
-    momentum,
-    unbalance,
-    speed,
-    gimbalRate,
-    toLeft: part.span / 2,
-    toRight: part.span / 2,
-    preload: choices.preload,
-    loadFactor: 1,
-  });
-  const equivalent = equivalentDynamicLoad(bearing.radial, bearing.axial, part.staticRating);
-  const steady = equivalentDynamicLoad(bearing.weight + bearing.unbalance, bearing.axial, part.staticRating);
-  const meanLoad = Math.min(equivalent, swingingMeanLoad(steady, bearing.gyroscopic));
-  const envelope = wheelEnvelope(gyro.wheel.parts);
-  const drag = wheelDragParts(envelope, gyro.housing, part, [meanLoad, meanLoad]);
-  const restDrag = wheelDragParts(envelope, gyro.housing, part, [steady, steady]);
-  const drive = compileDrive(gyro.motor, power);
+  const stood = standGyro(gyro, power, gimbalRate, choices);
+  if (stood.kind === 'refused') return stood;
+  const { standing } = stood;
+  const { drive, wheel, restDrag } = standing;
+  // A wheel slower than a turn a minute counts as at rest, and has no momentum.
+  const speed = standing.momentum > 0 ? gyro.speed : 0;
   const friction = drive.torqueConstant * drive.noLoadCurrent;
   const brakeCurrent = Math.min(choices.brakeCurrent, drive.currentLimit);
   return {
     kind: 'spun',
     report: {
-      gyro,
-      choices,
-      gimbalRate,
-      wheel,
-      envelope,
-      stress: stressed.stress,
-      burst: wheelBurst(wheel, speed),
-      momentum,
-      unbalance,
-      bearing,
-      meanLoad,
-      bearingLife: speed > 0 ? lifeSeconds(part.dynamicRating, meanLoad, speed) : Number.POSITIVE_INFINITY,
-      staticSafety: staticSafety(bearing.radial, bearing.axial, part.staticRating),
-      drag,
-      restDrag,
-      drive,
-      hold: holdSpeed(drive, drag.total, speed),
+      ...standing,
       spinUp: spinUp(drive, wheel.spinInertia, restDrag.total, speed),
       coast: spinDown(wheel.spinInertia, restDrag.total, friction, speed),
       braking: brakeWheel(drive, wheel.spinInertia, restDrag.total, speed, brakeCurrent),
-      openAir: windage(envelope.radius, envelope.width, speed, airAt(), { kind: 'open' }),
-      windage: drag.windageAt(speed),
     },
   };
 }
@@ -197,9 +79,10 @@ export interface RigSpin {
  * The Spin up station's work on a rig.
  *
  * @param gimbalPower  W, mean power of all gimbal drives and legs, from the plan; 0 when not known
+ * @param choices      in place of the usual ones, for every gyro
  */
-export function spinRig(rig: Rig, gimbalPower = 0): RigSpin {
-  const gyros = rig.array.gyros.map((gyro) => spinGyro(gyro, rig.power, gimbalRateOf(rig, gyro)));
+export function spinRig(rig: Rig, gimbalPower = 0, choices: Partial<SpinChoices> = {}): RigSpin {
+  const gyros = spinGyros(rig, choices);
   const batteryEnergy = packEnergy(rig.power.cells, rig.power.cellVoltage, rig.power.capacity);
   let stored = 0;
   let power = rig.power.otherPower;
@@ -218,7 +101,8 @@ export function spinRig(rig: Rig, gimbalPower = 0): RigSpin {
     gimbalTorque = Math.max(gimbalTorque, gyro.drive.kind === 'servo' ? gyro.drive.servo.stallTorque : 0);
     gimbalTorque = Math.max(gimbalTorque, momentum * Math.min(gimbalRate, BODY_RATE));
     if (gyro.speed > 0) printedParts += gyro.wheel.parts.filter(isPrinted).length;
-    power += hold.kind === 'held' ? hold.flows.battery : Number.POSITIVE_INFINITY;
+    if (gyro.spin.kind !== 'coasting')
+      power += hold.kind === 'held' ? hold.flows.battery : Number.POSITIVE_INFINITY;
     spinUpEnergy += up.kind === 'reaches' ? up.spinUp.batteryEnergy : Number.POSITIVE_INFINITY;
     spinUpTime += up.kind === 'reaches' ? up.spinUp.duration : Number.POSITIVE_INFINITY;
   }
@@ -242,6 +126,20 @@ export function spinRig(rig: Rig, gimbalPower = 0): RigSpin {
       batteryEnergy,
     }),
   };
+}
+
+/** Spins every gyro; those alike in all that matters are worked out once. */
+function spinGyros(rig: Rig, choices: Partial<SpinChoices>): readonly SpinOutcome[] {
+  const done = new Map<string, SpinOutcome>();
+  return rig.array.gyros.map((gyro) => {
+    const { wheel, speed, motor, bearing, housing } = gyro;
+    const rate = gimbalRateOf(rig, gyro);
+    const key = JSON.stringify([wheel.parts, wheel.balanceGrade, speed, motor, bearing, housing, rate]);
+    const outcome =
+      done.get(key) ?? spinGyro(gyro, rig.power, rate, { ...usualSpinChoices(gyro), ...choices });
+    done.set(key, outcome);
+    return outcome.kind === 'spun' ? { kind: 'spun', report: { ...outcome.report, gyro } } : outcome;
+  });
 }
 
 function shakesOf(rig: Rig, gyros: readonly SpinOutcome[]): readonly SensorShake[] {

@@ -3,21 +3,11 @@ import {
   describeTrigger,
   type SpinReport,
   shakeFigures,
+  spinFailures,
   spinFigures,
   spinRig,
 } from '../../core/physics';
 import type { Command } from '../command';
-
-/** What is wrong with a wheel, in words; empty for one that may be spun. */
-function failuresOf(report: SpinReport): readonly string[] {
-  const failures: string[] = [];
-  if (report.stress.spare < 0) failures.push('faster than its safe speed');
-  if (report.hold.kind === 'too fast') failures.push('its motor and battery cannot hold this speed');
-  else if (report.spinUp.kind === 'falls short')
-    failures.push('its motor and battery cannot reach this speed');
-  if (report.staticSafety < 1) failures.push('its bearings dent under the greatest load');
-  return failures;
-}
 
 const curveOf = (report: SpinReport) =>
   report.spinUp.kind === 'reaches'
@@ -72,7 +62,7 @@ export const spinCommand: Command = {
     if (sentences.length > 0) return { kind: 'refused', sentences };
     const gyros = reports.map((report, i) => ({
       name: report.gyro.name,
-      failures: failuresOf(report),
+      failures: spinFailures(report),
       figures: Object.fromEntries(spinFigures(report).map(({ name, figures }) => [name, figures])),
       sensor: shakeFigures(spin.shakes[i]!, report, rig.sensing.loopRate),
       stressLines: report.stress.lines,
