@@ -98,6 +98,11 @@ test('layouts are laid out by one tap', async ({ page }) => {
   await lay('Two pairs').click();
   await expect(lay('Two pairs')).toHaveAttribute('aria-pressed', 'true');
   await expect.poll(() => figure(page, 'Mass')).not.toBe(before);
+  // Roll and pitch each have their lines; opening one must not open the other.
+  if ((page.viewportSize()?.width ?? 0) >= 760) {
+    await page.locator('.rung', { hasText: 'Momentum in pitch' }).click();
+    await expect(page.locator('.rung[aria-expanded="true"]')).toHaveCount(1);
+  }
   for (const layout of ['Single', 'Pyramid', 'Reaction wheel', 'Scissored pair']) {
     await lay(layout).click();
     await expect(lay(layout)).toHaveAttribute('aria-pressed', 'true');

@@ -21,8 +21,8 @@ const rungLength = (line: LedgerLine): number => {
 /** Opens or closes a line; opening it moves the ribbon to the instant at which it is tightest. */
 function toggleLine(line: LedgerLine): void {
   const { openedLine, openLine } = useSession.getState();
-  const isOpening = openedLine !== line.name;
-  openLine(isOpening ? line.name : undefined);
+  const isOpening = openedLine !== line.label;
+  openLine(isOpening ? line.label : undefined);
   if (isOpening && line.at !== undefined) {
     stream.pause();
     stream.seek(line.at);
@@ -32,7 +32,7 @@ function toggleLine(line: LedgerLine): void {
 function Rung({ line }: { readonly line: LedgerLine }) {
   const id = useId();
   const place = useRef<HTMLLIElement>(null);
-  const isOpen = useSession((session) => session.openedLine === line.name);
+  const isOpen = useSession((session) => session.openedLine === line.label);
   const symbol = useSession((session) => session.units[line.ask.dimension]);
   const { dimension } = line.ask;
   const asked = formatNumber(fromSI(line.ask.value, dimension, symbol));
@@ -83,7 +83,7 @@ export function LedgerLadder() {
       {shown && <NoPlan plan={shown.plan} />}
       <ol>
         {shown?.ledger.lines.map((line) => (
-          <Rung key={line.name} line={line} />
+          <Rung key={line.label} line={line} />
         ))}
       </ol>
     </section>

@@ -36,7 +36,7 @@ function RibbonBody({ shown }: { readonly shown: Evaluated }) {
   const cycle = cycleOf(shown, rig.jobs.gait.kind === 'pattern');
   const tilt = useMemo(() => tiltCurves(shown, rig, units), [shown, rig, units]);
   const lower = useMemo(() => {
-    const line = shown.ledger.lines.find((candidate) => candidate.name === openedLine);
+    const line = shown.ledger.lines.find((candidate) => candidate.label === openedLine);
     const ofLine =
       line && (line.name === 'centreOfPressure' ? undefined : lineCurves(line, cycle, length, units));
     if (ofLine) return ofLine;

@@ -1,6 +1,5 @@
 /** The session: what is selected, open and switched on. Not part of the rig, not undoable; choices of taste are remembered. */
 import { create } from 'zustand';
-import type { LedgerLineName } from '../../core/planning';
 import type { Switches } from '../../core/trial';
 import type { Dimension } from '../../core/units';
 
@@ -39,7 +38,8 @@ export interface SessionState {
   readonly units: ChosenUnits;
   readonly theme: Theme;
   readonly quality: Quality;
-  readonly openedLine: LedgerLineName | undefined;
+  /** Label of the opened ledger line: two lines may share a name, one for roll and one for pitch, but not a label. */
+  readonly openedLine: string | undefined;
   /** Off: an edit of one gyro goes to all that are like it. */
   readonly isEachOnItsOwn: boolean;
   readonly stageInsets: StageInsets;
@@ -51,7 +51,7 @@ export interface SessionState {
   readonly chooseUnit: (dimension: Dimension, symbol: string) => void;
   readonly setTheme: (theme: Theme) => void;
   readonly setQuality: (quality: Quality) => void;
-  readonly openLine: (line: LedgerLineName | undefined) => void;
+  readonly openLine: (label: string | undefined) => void;
   readonly setEachOnItsOwn: (isEachOnItsOwn: boolean) => void;
   readonly setStageInsets: (insets: StageInsets) => void;
   readonly showCurves: (lowerCurves: LowerCurves) => void;
