@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
-import { identifyServoStep, identifyServoSweep, type ServoLog } from '../../src/core/bench/identify/servo';
+import { identifyServoStep, type ServoLog } from '../../src/core/bench/identify/servo';
+import { identifyServoSweep } from '../../src/core/bench/identify/servoSweep';
 import { expectCoverage } from '../support/coverage';
 import { createSeededStream } from '../support/seededStream';
 

@@ -3,7 +3,8 @@ import { identifyClosedLoop } from '../../../src/core/bench/identify/closedLoop'
 import { identifyCoastDown } from '../../../src/core/bench/identify/coastDown';
 import { dampingFromPeaks, identifyDecay, logDecrement } from '../../../src/core/bench/identify/decay';
 import { identifyPendulum, pendulumInertia } from '../../../src/core/bench/identify/pendulum';
-import { identifyServoStep, identifyServoSweep } from '../../../src/core/bench/identify/servo';
+import { identifyServoStep } from '../../../src/core/bench/identify/servo';
+import { identifyServoSweep } from '../../../src/core/bench/identify/servoSweep';
 import { identifySpinUp } from '../../../src/core/bench/identify/spinUp';
 import { identifyToppling } from '../../../src/core/bench/identify/toppling';
 import { expectClose } from '../../support/closeTo';

@@ -13,6 +13,7 @@ import {
   show,
 } from './result';
 import { layGrid, predictRun, type RollParameters, type RunData, type Stretch } from './rollPrediction';
+import { countReadings, dropKnocked, joinStretches } from './stretches';
 
 export interface ClosedLoopLog {
   /** s, rising, even to a few per cent. */
@@ -77,9 +78,6 @@ const MOST_POINTS = 20_000;
 /** Length of the stretches in toppling times: short to find knocks by, then joined, since every start left free costs a little. */
 const SHORTEST = 2.5;
 const LONGEST = 10;
-/** A stretch was knocked when its misfit lies this many standard deviations of a pure-noise misfit above the usual. */
-const KNOCKED = 5;
-
 /**
  * Finds which numbers of the rig must change for the model to match a closed-loop run.
  *
@@ -278,8 +276,6 @@ function fitRun(
   );
 }
 
-const countReadings = (run: RunData): number => run.stretches.reduce((n, s) => n + s.length, 0);
-
 function sumOfSquares(run: RunData, p: RollParameters): number {
   const out = new Float64Array(run.roll.length);
   predictRun(run, p, out);
@@ -288,39 +284,6 @@ function sumOfSquares(run: RunData, p: RollParameters): number {
 
 const measureSpread = (run: RunData, p: RollParameters): number =>
   Math.sqrt(sumOfSquares(run, p) / Math.max(1, countReadings(run) - 2 * run.stretches.length));
-
-function dropKnocked(run: RunData, residuals: Float64Array): RunData {
-  const spreads = run.stretches.map(({ from, length }) => {
-    let s = 0;
-    for (let i = from; i < from + length; i++) s += residuals[i] * residuals[i];
-    return Math.sqrt(s / length);
-  });
-  const usual = median(spreads);
-  const limit = usual * (1 + KNOCKED / Math.sqrt(2 * run.stretches[0].length));
-  const byMisfit = spreads.map((_, k) => k).sort((a, b) => spreads[b] - spreads[a]);
-  // At most a third: beyond that it is the model that fails, not the run.
-  const knocked = new Set(
-    byMisfit.slice(0, Math.floor(spreads.length / 3)).filter((k) => spreads[k] > limit),
-  );
-  return { ...run, stretches: run.stretches.filter((_, k) => !knocked.has(k)) };
-}
-
-/** Joins neighbouring stretches, at most so many to one. */
-function joinStretches(run: RunData, most: number): Stretch[] {
-  const joined: Stretch[] = [];
-  let count = 0;
-  for (const s of run.stretches) {
-    const last = joined[joined.length - 1];
-    if (last && last.from + last.length === s.from && count < most) {
-      joined[joined.length - 1] = { from: last.from, length: last.length + s.length };
-      count++;
-    } else {
-      joined.push(s);
-      count = 1;
-    }
-  }
-  return joined;
-}
 
 /** Forward selection: add the change that helps most until what is left is no better than changing all (F test, 1 %). */
 function findFewest(
