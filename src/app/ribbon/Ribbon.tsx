@@ -4,7 +4,7 @@ import { useDocument } from '../state/document';
 import { useIsNarrow } from '../state/looks';
 import { useShown } from '../state/reading';
 import { useSession } from '../state/session';
-import type { Evaluated } from '../state/stream';
+import { courseOf, type Evaluated } from '../state/stream';
 import { Playhead } from './Playhead';
 import { RibbonPlot } from './RibbonPlot';
 import { countRows, placeBlocks } from './ribbonBlocks';
@@ -21,8 +21,6 @@ export function Ribbon() {
     </section>
   );
 }
-
-const courseOf = (shown: Evaluated) => (shown.plan.kind === 'unplanned' ? undefined : shown.plan.course);
 
 function RibbonBody({ shown }: { readonly shown: Evaluated }) {
   const rig = useDocument((document) => document.rig);

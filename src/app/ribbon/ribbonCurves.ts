@@ -2,7 +2,7 @@
 import type { LedgerLine } from '../../core/planning';
 import type { Rig } from '../../core/rig';
 import { type Dimension, unitFor } from '../../core/units';
-import type { Evaluated } from '../state/stream';
+import { courseOf, type Evaluated, mostMomentum } from '../state/stream';
 import type { MarkedQuantity } from '../styles/quantityMarks';
 
 /** How a curve is told apart: one of the marked quantities, or a kind of ink line. */
@@ -127,8 +127,7 @@ export function momentumCurves(shown: Evaluated, units: Units): RibbonPlotData {
   const curves: Curve[] = [
     { label: 'momentum', look: 'momentum', values: column(motion.momentum, 3, 0, motion.samples, scale) },
   ];
-  const line = shown.ledger.lines.find((candidate) => candidate.name === 'momentum');
-  const most = line ? line.have.value * scale : 0;
+  const most = (mostMomentum(shown) ?? 0) * scale;
   const limits = most > 0 ? [most, -most] : [];
   const range = rangeFor(curves, limits, 0.02 * scale);
   return {
@@ -148,7 +147,7 @@ export function pressureCurves(
   length: number,
   units: Units,
 ): RibbonPlotData | undefined {
-  const course = shown.plan.kind === 'unplanned' ? undefined : shown.plan.course;
+  const course = courseOf(shown);
   const samples = course?.supportLeft.length ?? 0;
   if (!course || samples === 0) return undefined;
   const unit = unitFor('length', units.length);

@@ -1,5 +1,6 @@
 import { useShown } from '../state/reading';
 import { useSession } from '../state/session';
+import { mostMomentum } from '../state/stream';
 import { showQuantity } from './showFigure';
 
 /** Mass, centre, inertia and momentum in four boxes: what every edit is made for, always in sight. */
@@ -9,7 +10,7 @@ export function KeyFigures() {
   if (!shown) return null;
   const [x, y, z] = shown.centreOfMass;
   const length = (value: number): string => showQuantity(value, 'length', units.length);
-  const momentum = shown.ledger.lines.find((line) => line.name === 'momentum')?.have;
+  const momentum = mostMomentum(shown);
   return (
     <dl className="key-figures">
       <div>
@@ -30,7 +31,9 @@ export function KeyFigures() {
       </div>
       <div>
         <dt>Momentum to give</dt>
-        <dd>{momentum ? showQuantity(momentum.value, 'angularMomentum', units.angularMomentum) : '–'}</dd>
+        <dd>
+          {momentum === undefined ? '–' : showQuantity(momentum, 'angularMomentum', units.angularMomentum)}
+        </dd>
         <dd className="aside">within the tilt limits</dd>
       </div>
     </dl>

@@ -2,10 +2,20 @@
  * The stream: the motion on screen and where its playhead stands. It lives outside React. Whatever draws per
  * frame subscribes with `onFrame` and reads the fields; React hears only of new evaluations and of play/pause.
  */
-import type { Evaluation, Motion } from '../../core/trial';
+import type { Evaluation, Motion, PlanCourse } from '../../core/trial';
 
 /** An evaluation that gave results. */
 export type Evaluated = Extract<Evaluation, { kind: 'evaluated' }>;
+
+/** The plan's curves; undefined while nothing could be planned or proved impossible. */
+export const courseOf = (shown: Evaluated): PlanCourse | undefined =>
+  shown.plan.kind === 'unplanned' ? undefined : shown.plan.course;
+
+/** N*m*s, the most momentum the tilt limits allow in roll at any instant of the plan; undefined without one. */
+export function mostMomentum(shown: Evaluated): number | undefined {
+  const limit = courseOf(shown)?.momentumLimit;
+  return limit && limit.length > 0 ? limit.reduce((most, value) => Math.max(most, value), 0) : undefined;
+}
 
 type Listener = () => void;
 
