@@ -2,7 +2,15 @@
 import { mkdirSync, readFileSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { toJsonSchema } from '@valibot/to-json-schema';
-import { DEMONSTRATIONS, RIG_FORMAT, RIG_VERSION, RigSchema } from '../src/core/rig';
+import {
+  DEMONSTRATIONS,
+  PARTS_FORMAT,
+  PARTS_VERSION,
+  PartsSchema,
+  RIG_FORMAT,
+  RIG_VERSION,
+  RigSchema,
+} from '../src/core/rig';
 
 const folder = join(import.meta.dirname, '../public');
 
@@ -14,12 +22,21 @@ export const rigJsonSchema = (): object => ({
   ...toJsonSchema(RigSchema, { target: 'draft-07' }),
 });
 
+/** The JSON Schema of a file of parts. */
+export const partsJsonSchema = (): object => ({
+  $id: `${PARTS_FORMAT}.schema.json`,
+  title: 'Parts for Tiltwright rigs',
+  description: `Format "${PARTS_FORMAT}", version ${PARTS_VERSION}. All numbers in SI: m, kg, s, rad, N, V, A, Ω.`,
+  ...toJsonSchema(PartsSchema, { target: 'draft-07' }),
+});
+
 export const schemaText = (): string => `${JSON.stringify(rigJsonSchema(), null, 1)}\n`;
 export const rigText = (rig: object): string => `${JSON.stringify(rig, null, 2)}\n`;
 
 /** Every generated file, by its path under public/. */
 export const generatedFiles = (): readonly (readonly [path: string, text: string])[] => [
   [`${RIG_FORMAT}.schema.json`, schemaText()],
+  [`${PARTS_FORMAT}.schema.json`, `${JSON.stringify(partsJsonSchema(), null, 1)}\n`],
   ...DEMONSTRATIONS.map(({ file, rig }) => [`rigs/${file}`, rigText(rig)] as const),
 ];
 

@@ -6,6 +6,8 @@ export * from './jobs';
 export * from './layouts';
 export * from './materials';
 export * from './parts';
+export * from './partsFile';
 export * from './reading';
+export { type Refusal, schemaAt } from './refusals';
 export * from './schema';
 export * from './stockBearings';

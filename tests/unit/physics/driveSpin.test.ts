@@ -5,9 +5,10 @@ import {
   cautionsFor,
   describeTrigger,
 } from '../../../src/core/physics/cautions';
-import { gimbalRateOf, spinGyro, spinRig } from '../../../src/core/physics/spin';
+import { spinGyro, spinRig } from '../../../src/core/physics/spin';
 import { arraySpinFigures } from '../../../src/core/physics/spinDriveFigures';
 import { spinFigures } from '../../../src/core/physics/spinFigures';
+import { gimbalRateOf } from '../../../src/core/physics/spinStanding';
 import { BENCH_GYRO, BENCH_POWER, DEMONSTRATIONS, type Gyro, SKIFF } from '../../../src/core/rig';
 import { expectClose } from '../../support/closeTo';
 
