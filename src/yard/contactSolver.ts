@@ -10,7 +10,7 @@ import {
   type FrictionEquation,
   Narrowphase,
   Solver,
-  type Vec3,
+  Vec3,
   type World,
 } from 'cannon-es';
 
@@ -31,7 +31,11 @@ export class TiedNarrowphase extends Narrowphase {
   override createFrictionEquationsFromContact(contact: ContactEquation, out: FrictionEquation[]): boolean {
     const made = super.createFrictionEquationsFromContact(contact, out);
     if (made) {
-      for (let k = out.length - 2; k < out.length; k++) (out[k] as Tangent).contact = contact;
+      for (let k = out.length - 2; k < out.length; k++) {
+        (out[k] as Tangent).contact = contact;
+        // cannon-es leaves them shorter than one on any ground that is not level.
+        out[k].t.normalize();
+      }
     }
     return made;
   }
@@ -49,6 +53,7 @@ export class ContactSolver extends Solver {
   /** Friction pairs: row of the first tangent, row of the normal, friction. */
   private readonly pairs: number[] = [];
   private readonly friction: number[] = [];
+  private readonly slideStep: number[] = [];
   private readonly isTangent: boolean[] = [];
 
   constructor(private readonly frictionOf: (contact: ContactEquation) => number) {
@@ -99,32 +104,36 @@ export class ContactSolver extends Solver {
       if (change !== 0) equation.addToWlambda(change);
       largest = Math.max(largest, Math.abs(change / inverse[j]));
     }
-    for (let p = 0; p < pairs.length; p += 2) {
-      const first = pairs[p];
-      const bound = this.friction[p / 2] * force[pairs[p + 1]];
-      const a = equations[first];
-      const b = equations[first + 1];
-      const beforeA = force[first];
-      const beforeB = force[first + 1];
-      let x = beforeA + inverse[first] * (right[first] - a.computeGWlambda() - a.eps * beforeA);
-      let y = beforeB + inverse[first + 1] * (right[first + 1] - b.computeGWlambda() - b.eps * beforeB);
-      const size = Math.sqrt(x * x + y * y);
-      if (size > bound) {
-        const share = bound > 0 ? bound / size : 0;
-        x *= share;
-        y *= share;
-      }
-      force[first] = x;
-      force[first + 1] = y;
-      if (x !== beforeA) a.addToWlambda(x - beforeA);
-      if (y !== beforeB) b.addToWlambda(y - beforeB);
-      largest = Math.max(
-        largest,
-        Math.abs((x - beforeA) / inverse[first]),
-        Math.abs((y - beforeB) / inverse[first + 1]),
-      );
-    }
+    for (let p = 0; p < pairs.length; p += 2) largest = Math.max(largest, this.slide(p));
     return largest;
+  }
+
+  /**
+   * Friction of one contact: a step against the slip, brought back into the disc. Both directions take the same
+   * step, or the force would not point against the slip. Returns the change of slip it made, m/s.
+   */
+  private slide(p: number): number {
+    const { equations, right, force, pairs } = this;
+    const j = pairs[p];
+    const bound = this.friction[p / 2] * force[pairs[p + 1]];
+    const step = this.slideStep[p / 2];
+    const a = equations[j];
+    const b = equations[j + 1];
+    const beforeX = force[j];
+    const beforeY = force[j + 1];
+    let x = beforeX + step * (right[j] - a.computeGWlambda() - a.eps * beforeX);
+    let y = beforeY + step * (right[j + 1] - b.computeGWlambda() - b.eps * beforeY);
+    const size = Math.sqrt(x * x + y * y);
+    if (size > bound) {
+      const share = bound > 0 ? bound / size : 0;
+      x *= share;
+      y *= share;
+    }
+    force[j] = x;
+    force[j + 1] = y;
+    if (x !== beforeX) a.addToWlambda(x - beforeX);
+    if (y !== beforeY) b.addToWlambda(y - beforeY);
+    return Math.max(Math.abs(x - beforeX), Math.abs(y - beforeY)) / step;
   }
 
   private findPairs(): void {
@@ -141,9 +150,24 @@ export class ContactSolver extends Solver {
       this.isTangent[j] = true;
       this.isTangent[j + 1] = true;
       pairs.push(j, normal);
+      this.slideStep[this.friction.length] = slideStepOf(equations[j], equations[j + 1]);
       this.friction.push(this.frictionOf(contact));
     }
   }
+}
+
+const turned = new Vec3();
+
+/** Largest step of force for slip in two directions that does not overshoot: one over what gives way the most. */
+function slideStepOf(a: Equation, b: Equation): number {
+  const x = a.computeC();
+  const y = b.computeC();
+  a.bi.invInertiaWorldSolve.vmult(b.jacobianElementA.rotational, turned);
+  let both = turned.dot(a.jacobianElementA.rotational);
+  a.bj.invInertiaWorldSolve.vmult(b.jacobianElementB.rotational, turned);
+  both += turned.dot(a.jacobianElementB.rotational);
+  const half = 0.5 * (x - y);
+  return 1 / (0.5 * (x + y) + Math.sqrt(half * half + both * both));
 }
 
 /** How fast the surfaces of an equation part along it by moving on their bodies. */

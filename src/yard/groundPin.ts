@@ -1,9 +1,7 @@
 /** A rig held at a point of the ground, or along a line of it, where it may roll and nothing else. */
 import { type Body, Constraint, ContactEquation, RotationalEquation, Vec3 } from 'cannon-es';
+import { RELAXATION } from './contactWorld';
 import type { RigBody } from './rigBody';
-
-/** Steps in which an error of place is taken back, about; see SPOOK in cannon-es. */
-const RELAXATION = 8;
 
 export class GroundPin extends Constraint {
   private readonly along: readonly ContactEquation[];

@@ -24,6 +24,8 @@ import {
 } from '../core/planning';
 import type { Refusal } from '../core/rig';
 import {
+  AS_DRAWN,
+  builtServo,
   type Doubt,
   MOVING_BASE,
   movingBaseCourse,
@@ -82,6 +84,8 @@ export class RigLoop {
   private readonly state = new Float64Array(9);
   private readonly bodyState = new Float64Array(9);
   private readonly stepsPerTick: number;
+  /** N*m asked of reaction wheels, not yet in force. */
+  private readonly asked: number[];
   private steps = 0;
 
   constructor(
@@ -103,7 +107,9 @@ export class RigLoop {
     this.actuators = gimbalGroups(compiled).map((group): Actuator => {
       const { min, max } = rig.array.gyros[group.leader].tilt;
       const inertia = group.members.reduce((sum, { index }) => sum + model.hingeInertia[index], 0);
-      const servo = mountServo(group.servo, { gimbalInertia: inertia, tiltMin: min, tiltMax: max });
+      const gimbals = group.members.map(({ index }) => rig.array.gyros[index].gimbal);
+      const built = builtServo(group.servo, gimbals, { ...AS_DRAWN, ...doubt });
+      const servo = mountServo(built, { gimbalInertia: inertia, tiltMin: min, tiltMax: max });
       const work = createServoWork(servo, 1 / step, rig.sensing.loopDelay);
       const sign = isReaction ? 0 : signOf(group.leader);
       resetServo(work, sign * this.law.startTilt);
@@ -111,6 +117,7 @@ export class RigLoop {
     });
     this.base = movingBaseCourse(rig, setting.course);
     this.place = new PlanPlace(setting);
+    this.asked = new Array(Math.round(rig.sensing.loopDelay / step) + 1).fill(0);
   }
 
   /** Wheel speeds as the doubted rig has them, rad/s. */
@@ -168,8 +175,9 @@ export class RigLoop {
   move(body: RigBody, time: number, lean: number, leanRate: number, isFlat: boolean): void {
     const { law, step } = this;
     const { loopDelay } = this.setting.compiled.rig.sensing;
-    if (this.steps % this.stepsPerTick === 0)
-      law.tick(time, lean, leanRate, isFlat, this.stepsPerTick * step);
+    if (this.steps % this.stepsPerTick === 0) {
+      law.tick(time, lean, leanRate, isFlat, this.stepsPerTick * step, this.gainedMomentum(body));
+    }
     this.steps++;
     for (const { group, sign, servo, work } of this.actuators) {
       if (!law.isArrayOn) continue;
@@ -180,10 +188,34 @@ export class RigLoop {
         body.nextTiltRate[index] = ratio * work.state[SERVO_STATE.rate];
       }
     }
-    for (let i = 0; i < body.model.gimbals; i++) {
-      if (this.motorSigns[i] !== 0) body.motor[i] = -this.motorSigns[i] * law.bodyTorque();
-    }
+    this.driveWheels(body);
     this.placeLegs(time + step, body.nextBase, body.nextFeet);
+  }
+
+  /** Torques on reaction wheels: each its share of what the loop asks, after the loop's delay and up to its top speed. */
+  private driveWheels(body: RigBody): void {
+    const { rig } = this.setting.compiled;
+    const wheels = this.motorSigns.reduce((sum, sign) => sum + Math.abs(sign), 0);
+    if (wheels === 0) return;
+    const late = this.asked.shift() as number;
+    this.asked.push(this.law.bodyTorque());
+    for (let i = 0; i < this.motorSigns.length; i++) {
+      const torque = (-this.motorSigns[i] * late) / wheels;
+      const top = rig.array.gyros[i].motor.velocityConstant * rig.power.cells * rig.power.cellVoltage;
+      const speed = body.spin[i] / body.model.array.axialInertia[i];
+      body.motor[i] = Math.abs(speed) >= top && torque * speed > 0 ? 0 : torque;
+    }
+  }
+
+  /** N*m*s about roll that reaction wheels have taken up since the start. */
+  private gainedMomentum(body: RigBody): number {
+    let sum = 0;
+    for (let i = 0; i < this.motorSigns.length; i++) {
+      if (this.motorSigns[i] === 0) continue;
+      const start = this.setting.compiled.speeds[i] * this.doubt.wheelSpeed;
+      sum += this.motorSigns[i] * (body.spin[i] - start * body.model.array.axialInertia[i]);
+    }
+    return sum;
   }
 }
 

@@ -5,7 +5,7 @@
  *
  * No figure that the star can give is taken from here: the yard shows what contact does.
  */
-import { Body, type ContactEquation, Quaternion, Vec3, World } from 'cannon-es';
+import { Body, type ContactEquation, Quaternion, Vec3, type World } from 'cannon-es';
 import {
   arrayMomentum,
   arrayTorque,
@@ -15,7 +15,7 @@ import {
 } from '../core/physics';
 import type { Refusal } from '../core/rig';
 import type { Doubt, Switches } from '../core/trial';
-import { ContactSolver, TiedNarrowphase } from './contactSolver';
+import { createContactWorld, USUAL_FRICTION } from './contactWorld';
 import { boxInertiaMatrix, boxShape, type GroundChoice, groundOf, planeShape, type YardBox } from './ground';
 import { GroundPin } from './groundPin';
 import { MomentumBody } from './momentumBody';
@@ -26,12 +26,6 @@ import { MOST_OBJECTS, type SnapshotLayout, snapshotLayout } from './snapshot';
 
 /** s. */
 export const YARD_STEP = 0.001;
-/** Friction between things whose rig gives none; wood on concrete, common practice. */
-const USUAL_FRICTION = 0.6;
-/** m: how far the weight of the rig presses its contacts in, all of it on one of them. */
-const GIVE = 2e-6;
-/** Steps in which a contact's error of place is taken back, about; see SPOOK in cannon-es. */
-const RELAXATION = 8;
 /** Lean counted as gone over, rad. */
 const TOPPLED = 0.9;
 /** A finger pushes at most so many times the rig's weight. */
@@ -85,7 +79,6 @@ export class Yard {
   /** s; NaN while the rig has not gone over. */
   toppledAt = Number.NaN;
   private readonly world: World;
-  private readonly solver: ContactSolver;
   private readonly floor: Body;
   private finger: Finger | undefined;
   private fingerForce = 0;
@@ -105,19 +98,11 @@ export class Yard {
   ) {
     const { compiled } = setting;
     const { rig, whole } = compiled;
-    const gravity = new Vec3(0, 0, -STANDARD_GRAVITY);
     const friction = rig.footing.kind === 'firm' ? rig.footing.friction : USUAL_FRICTION;
-    this.world = new World({ gravity, allowSleep: false });
-    const touch = this.world.defaultContactMaterial;
-    touch.friction = USUAL_FRICTION;
-    touch.restitution = 0;
-    touch.contactEquationStiffness = (whole.mass * STANDARD_GRAVITY) / GIVE;
-    touch.frictionEquationStiffness = touch.contactEquationStiffness;
-    touch.contactEquationRelaxation = RELAXATION;
-    touch.frictionEquationRelaxation = RELAXATION;
-    this.solver = new ContactSolver((contact) => this.frictionOf(contact, friction));
-    this.world.solver = this.solver;
-    this.world.narrowphase = new TiedNarrowphase(this.world);
+    this.world = createContactWorld({
+      weight: whole.mass * STANDARD_GRAVITY,
+      frictionOf: (a, b) => (a === this.rig || b === this.rig ? friction : USUAL_FRICTION),
+    });
 
     const size = compiled.whole.com[2] + depthBelowOrigin(compiled);
     const ground = groundOf(setting.ground, 2 * size);
@@ -129,12 +114,12 @@ export class Yard {
     for (const box of this.standing) this.world.addBody(placed(new Body({ mass: 0 }), box));
     for (const box of ground.boxes) if (box.mass > 0) this.lay(box);
 
-    this.rig = this.makeRig(gravity);
+    this.rig = this.makeRig();
     this.layout = snapshotLayout(compiled.model.gimbals, loop.setting.gait.legs);
     this.wheelMomentum = new Float64Array(compiled.model.gimbals);
   }
 
-  private makeRig(gravity: Vec3): RigBody {
+  private makeRig(): RigBody {
     const { compiled, lean = 0, leanRate = 0 } = this.setting;
     const { rig, model } = compiled;
     const { loop } = this;
@@ -144,7 +129,7 @@ export class Yard {
     loop.placeLegs(0, base, feet);
     const body = new RigBody(
       { model, shapes: rigShapes(compiled), free: freeGimbals(compiled), base, feet },
-      gravity,
+      this.world.gravity,
     );
     loop.startTilts(body);
     const turn = new Quaternion();
@@ -255,10 +240,6 @@ export class Yard {
     body.setMassProperties(box.mass, boxInertiaMatrix(box));
     this.world.addBody(body);
     this.objects.push({ box, body });
-  }
-
-  private frictionOf({ bi, bj }: ContactEquation, friction: number): number {
-    return bi === this.rig || bj === this.rig ? friction : USUAL_FRICTION;
   }
 
   private applyAt(force: Vec3, point: readonly [number, number, number]): void {
