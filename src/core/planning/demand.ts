@@ -260,6 +260,18 @@ export function meanMoment(demand: Demand): { readonly roll: number; readonly pi
   return { roll: mean(demand.roll), pitch: mean(demand.pitch) };
 }
 
+/**
+ * Roll moment left over about the middle of the support, N*m at each node: what the array must give when the
+ * centre of pressure stays in the middle. This is the demand as screens show it.
+ */
+export function rollLeftOver(demand: Demand): Float64Array {
+  return demand.roll.map((moment, k) => {
+    const interval = Math.min(k, demand.intervals - 1);
+    const middle = (demand.acrossMin[interval] + demand.acrossMax[interval]) / 2;
+    return -moment - demand.verticalForce[k] * middle;
+  });
+}
+
 /** One axis as the planner takes it: what array and support must give together, and how far the support may reach. */
 export interface FirmAsk {
   /** nodes, N*m: array + verticalForce x pressure = ask. */

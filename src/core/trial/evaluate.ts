@@ -2,18 +2,17 @@
 import { type CompiledRig, compileRig, weigh } from '../physics';
 import {
   type AxisSchedule,
-  arrayAxes,
   createPlanWork,
   defaultPlanOptions,
   eventBlocks,
   gimbalCourses,
   ledgerLines,
-  type MomentumPlanOutcome,
   makeLedger,
   type PlanSetting,
   type PlanWork,
   phaseBlocks,
-  planMomentum,
+  planRig,
+  rollLeftOver,
   setUpPlan,
 } from '../planning';
 import type { Rig } from '../rig';
@@ -49,8 +48,7 @@ export function evaluate(rig: Rig, switches: Switches, work: EvaluationWork): Ev
   const { compiled } = outcome;
   const set = setUpPlan(compiled);
   if (set.kind === 'refused') return set;
-  const { setting } = set;
-  const { plan, schedules } = planOf(setting, work);
+  const { plan, schedules, setting } = planOf(set.setting, work);
   const { motion, outcome: end } = runPreview(setting, schedules, switches, rig.jobs.duration);
   return {
     kind: 'evaluated',
@@ -70,40 +68,50 @@ function fullInertia({ whole }: CompiledRig): readonly number[] {
   return [xx, xy, xz, xy, yy, yz, xz, yz, zz];
 }
 
-function planOf(
-  setting: PlanSetting,
-  work: EvaluationWork,
-): { readonly plan: PlanView; readonly schedules: readonly AxisSchedule[] } {
-  const arrays = arrayAxes(setting.compiled);
-  if (arrays.kind !== 'axes' || setting.axes.length === 0) {
-    const sentence = arrays.kind === 'axes' ? 'No wheel of this array pushes in roll.' : arrays.sentence;
-    return { plan: { kind: 'unplanned', sentence }, schedules: [] };
-  }
+interface Planned {
+  readonly plan: PlanView;
+  readonly schedules: readonly AxisSchedule[];
+  readonly setting: PlanSetting;
+}
+
+function planOf(setting: PlanSetting, work: EvaluationWork): Planned {
+  const none = (plan: PlanView): Planned => ({ plan, schedules: [], setting });
   const start = work.clock();
-  const outcome: MomentumPlanOutcome = planMomentum(setting.problem, defaultPlanOptions, work.plan);
+  const outcome = planRig(setting, defaultPlanOptions, work.plan);
   const solveSeconds = work.clock() - start;
   switch (outcome.kind) {
     case 'planned': {
-      const course = courseOf(setting, outcome.axes);
+      const { schedules, iterations } = outcome;
+      const course = courseOf(outcome.setting, schedules);
       return {
-        plan: { kind: 'planned', course, solveSeconds, iterations: outcome.iterations },
-        schedules: outcome.axes,
+        plan: { kind: 'planned', course, solveSeconds, iterations },
+        schedules,
+        setting: outcome.setting,
       };
     }
+    case 'unplanned':
+      return none({ kind: 'unplanned', sentence: outcome.sentence });
+    case 'unsteered':
+      return none({
+        kind: 'impossible',
+        line: 'singularity',
+        sentence: outcome.sentence,
+        cures: [],
+        course: courseOf(setting, []),
+      });
     case 'impossible':
-      return {
-        plan: { kind: 'impossible', ...explainImpossible(outcome), cures: [], course: courseOf(setting, []) },
-        schedules: [],
-      };
+      return none({
+        kind: 'impossible',
+        ...explainImpossible(outcome),
+        cures: [],
+        course: courseOf(setting, []),
+      });
     case 'gave-up':
-      return {
-        plan: {
-          kind: 'unplanned',
-          sentence:
-            'The planner found neither a plan nor a proof that there is none; change a number a little and it will try again.',
-        },
-        schedules: [],
-      };
+      return none({
+        kind: 'unplanned',
+        sentence:
+          'The planner found neither a plan nor a proof that there is none; change a number a little and it will try again.',
+      });
   }
 }
 
@@ -129,7 +137,7 @@ function courseOf(setting: PlanSetting, schedules: readonly AxisSchedule[]): Pla
     time,
     gyros: setting.compiled.rig.array.gyros.length,
     ...gimbalCourses(setting, schedules),
-    demand: isFirm ? wrapped(setting.demand.roll).map((m) => -m) : setting.outside.map((m) => -m),
+    demand: isFirm ? wrapped(rollLeftOver(setting.demand)) : setting.outside.map((m) => -m),
     torque: roll?.torque ?? none,
     momentum: roll?.momentum ?? none,
     momentumLimit: none.map(() => most),

@@ -29,7 +29,7 @@ export interface PlanCourse {
   /** nodes x gyros, rad; rad/s; rad/s^2. */
   readonly tilt: Float64Array;
   readonly tiltRate: Float64Array;
-  /** nodes, N*m: what gravity and inertia leave over about the support, and what the array gives, roll. */
+  /** nodes, N*m: what is left over about the middle of the support (or from outside), and what the array gives, roll. */
   readonly demand: Float64Array;
   readonly torque: Float64Array;
   /** nodes, N*m*s, momentum held in roll, and the most the tilt limits allow. */

@@ -33,6 +33,7 @@ import {
   gimbalGroups,
   type PlanSetting,
   pivotHeight,
+  rollLeftOver,
 } from '../planning';
 import type { Gyro } from '../rig';
 import { type Build, builtCarrier, builtFall, builtServo } from './build';
@@ -78,6 +79,8 @@ export interface PreviewRun {
   /** Base while the legs walk; undefined where nothing but the gimbals moves on the body. */
   readonly base: Float64Array | undefined;
   readonly baseNow: Float64Array;
+  /** Firm: moment left over about the middle of the support, N*m at each node; empty for the rest. */
+  readonly leftOver: Float64Array;
   readonly planted: Float64Array;
   readonly place: PlanPlace;
   /** Disturbances on feet, which the plan of a gait does not know; undefined for a body that leans. */
@@ -164,6 +167,7 @@ export function prepareRun(
     heel: compiled.floating ? STANDARD_GRAVITY * compiled.whole.mass * build.centreUp : 0,
     base: setting.kind === 'firm' ? movingBaseCourse(compiled.rig, setting.course) : undefined,
     baseNow: new Float64Array(MOVING_BASE),
+    leftOver: setting.kind === 'firm' ? rollLeftOver(setting.demand) : new Float64Array(0),
     planted: new Float64Array(9),
     place: new PlanPlace(setting),
     outside,

@@ -39,7 +39,7 @@ function recordWalk(run: PreviewRun, setting: FirmPlanSetting, motion: Motion, s
     z: 0,
     forward: gait.velocity[0] * motion.time[sample],
   };
-  motion.demand[sample] = -place.valueOf(demand.roll);
+  motion.demand[sample] = place.heldValueOf(run.leftOver);
   const along = (values: Float64Array, axis: number): number => place.valueOf(values, 3, axis);
   writePose(motion, sample, turn, along(course.body, 0), along(course.body, 1), along(course.body, 2));
   const centre = demand.centreOfMass;
