@@ -2,7 +2,13 @@ import type { Rig } from '../core/rig';
 
 /** What a command came to. `failing` is a rig that fails its own limits; `refused` a bad file or option. */
 export type CommandOutcome =
-  | { readonly kind: 'done'; readonly output: unknown; readonly csv?: string }
+  | {
+      readonly kind: 'done';
+      readonly output: unknown;
+      readonly csv?: string;
+      /** In place of the output: one JSON value a line, printed as each is ready, so that files can be put together. */
+      readonly lines?: Iterable<unknown>;
+    }
   | { readonly kind: 'failing'; readonly output: unknown; readonly csv?: string }
   | { readonly kind: 'refused'; readonly sentences: readonly string[] };
 

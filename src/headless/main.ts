@@ -111,6 +111,10 @@ async function main(words: readonly string[]): Promise<number> {
     say([`${command.name} has no table to print as CSV.`]);
     return 2;
   }
+  if (outcome.kind === 'done' && outcome.lines && !wantsCsv) {
+    for (const line of outcome.lines) process.stdout.write(`${JSON.stringify(line)}\n`);
+    return 0;
+  }
   process.stdout.write(wantsCsv ? (outcome.csv as string) : `${asJson(outcome.output)}\n`);
   return outcome.kind === 'failing' ? 1 : 0;
 }

@@ -26,5 +26,6 @@ export * from './rigSeakeeping';
 export * from './rollRun';
 export * from './seakeeping';
 export * from './sequence';
+export * from './shoveLimit';
 export * from './supportPolygon';
 export * from './waveLoad';

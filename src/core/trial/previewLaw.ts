@@ -95,7 +95,7 @@ export function previewLaw(
     interval: setting.problem.step,
     isCyclic: setting.course.isCyclic,
   };
-  const controller = switches.isFeedbackOn ? controllerOf(setting, axis, computed) : undefined;
+  const controller = switches.isFeedbackOn ? feedbackOf(setting, axis, computed) : undefined;
   if (axis.array.kind === 'reaction') return reactionLaw(axis.array, plan, controller);
   return setting.kind === 'firm'
     ? tippingLaw(axis.array, plan, controller)
@@ -103,7 +103,7 @@ export function previewLaw(
 }
 
 /** What answers the lean: the law the rig names, the one computed for it, or quick gains in its place. */
-function controllerOf(
+export function feedbackOf(
   setting: PlanSetting,
   axis: ArrayAxis,
   computed: Controller | undefined,

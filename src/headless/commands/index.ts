@@ -1,8 +1,10 @@
 import type { Command } from '../command';
 import { balanceCommand } from './balance';
 import { identifyCommand } from './identify';
+import { manyCommand } from './many';
 import { planCommand } from './plan';
 import { spinCommand } from './spin';
+import { trialCommand } from './trial';
 import { weighCommand } from './weigh';
 
 /** Every command, in the order of the job. A new one is a file of its own and a line here. */
@@ -10,6 +12,8 @@ export const COMMANDS: readonly Command[] = [
   weighCommand,
   spinCommand,
   planCommand,
+  trialCommand,
+  manyCommand,
   identifyCommand,
   balanceCommand,
 ];

@@ -119,7 +119,7 @@ describe('what each term does, in words', () => {
 describe('a rig’s control, servo and sensing entries', () => {
   it('become a controller and a plant with all their delays added up', () => {
     for (const control of [
-      { kind: 'feedback', lean: 1, leanRate: 2, tilt: 3, tiltRate: 0.4 },
+      { kind: 'feedback', lean: 1, leanRate: 2, tilt: 3, tiltRate: 0.4, trim: 0.5 },
       { kind: 'pidTilt', kp: 1, ki: 2, kd: 3 },
       { kind: 'reactionWheel', lean: 1, leanRate: 2, speed: 3 },
       { kind: 'passive' },
