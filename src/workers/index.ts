@@ -1,1 +1,2 @@
 export { createEvaluator, type Evaluator } from './evaluator';
+export { createSpinner, type Spinner } from './spinner';

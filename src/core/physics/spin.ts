@@ -64,6 +64,8 @@ export interface RigSpin {
   readonly stored: number;
   /** W, to hold all wheels and everything else the rig runs; gimbals at work come on top. */
   readonly power: number;
+  /** W, as given. */
+  readonly gimbalPower: number;
   /** J, to bring all wheels up, one after another. */
   readonly spinUpEnergy: number;
   /** s, to bring all wheels up one after another; infinite when one cannot reach its speed. */
@@ -111,6 +113,7 @@ export function spinRig(rig: Rig, gimbalPower = 0, choices: Partial<SpinChoices>
     shakes: shakesOf(rig, gyros),
     stored,
     power,
+    gimbalPower,
     spinUpEnergy,
     spinUpTime,
     batteryEnergy,

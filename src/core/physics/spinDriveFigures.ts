@@ -142,6 +142,9 @@ export function shakeFigures(shake: SensorShake, report: SpinReport, loopRate: n
   ];
 }
 
+/** What the run time and the ledger's battery line call the gimbals' share, so that one can be found by the other. */
+export const GIMBAL_POWER = 'Mean power of the gimbal drives';
+
 /** Figures of the whole array on its battery. */
 export function arraySpinFigures(spin: RigSpin): readonly Figure[] {
   const note = DRIVE_FORMULAS;
@@ -154,7 +157,8 @@ export function arraySpinFigures(spin: RigSpin): readonly Figure[] {
     figure('runTime', 'Run time on one charge', spin.runTime, 'time', note.runTime, [
       battery,
       input('Energy to spin up', spin.spinUpEnergy, 'energy'),
-      input('Power', spin.power, 'power'),
+      input('Power with all wheels held', spin.power, 'power'),
+      input(GIMBAL_POWER, spin.gimbalPower, 'power'),
     ]),
   ];
 }

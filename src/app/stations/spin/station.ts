@@ -1,0 +1,11 @@
+import type { Station } from '../station';
+import { SpinSheet } from './SpinSheet';
+import { spinMark } from './spinMark';
+
+export const SPIN: Station = {
+  id: 'spin',
+  word: 'Spin up',
+  question: 'Can the wheel be spun, safely, on this motor and battery?',
+  mark: (_, rig) => spinMark(rig),
+  Sheet: SpinSheet,
+};

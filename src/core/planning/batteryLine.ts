@@ -1,0 +1,148 @@
+/** The battery's line of the ledger: what the run takes out of it against what it may give. */
+import {
+  GIMBAL_POWER,
+  gimbalRateOf,
+  packEnergy,
+  type SpinStanding,
+  servoPower,
+  spinUp,
+  standGyro,
+  USUAL_USABLE_CHARGE,
+} from '../physics';
+import type { ArrayAxis } from './arrayAxes';
+import type { LedgerLine } from './ledger';
+import { input, lineOf } from './ledgerLine';
+import type { AxisSchedule } from './momentumPlanCheck';
+import type { PlanSetting } from './rigPlan';
+
+/** Pieces of the spin-up integral: its energy is within 1e-4 of that of many (measured 4e-7). */
+const PANELS = 12;
+
+/**
+ * Mean electrical power of all gimbal servos over a plan, W: each servo's holding heat and work, never given back.
+ *
+ * O(instants x axes). Source: linear servo model.
+ */
+export function meanGimbalPower(setting: PlanSetting, schedules: readonly AxisSchedule[]): number {
+  let total = 0;
+  schedules.forEach((schedule, a) => {
+    const { servo, followers } = setting.axes[a] as ArrayAxis;
+    if (!servo) return;
+    const servos = followers.filter(
+      ({ gyro }) => setting.compiled.rig.array.gyros[gyro]?.drive.kind === 'servo',
+    ).length;
+    let sum = 0;
+    for (let k = 0; k < schedule.servoTorque.length; k++) {
+      const torque = schedule.servoTorque[k] as number;
+      sum += servoPower(servo.stallTorque, servo.noLoadSpeed, torque, schedule.tiltRate[k] as number);
+    }
+    total += (servos * sum) / Math.max(1, schedule.servoTorque.length);
+  });
+  return total;
+}
+
+interface WheelBudget {
+  /** J. */
+  readonly spinUp: number;
+  /** W. */
+  readonly hold: number;
+  readonly standing: SpinStanding;
+}
+
+/** What each wheel takes; those alike are worked out once. A wheel whose speed cannot be held is told by its standing. */
+function wheelBudgets(setting: PlanSetting): readonly WheelBudget[] {
+  const { rig } = setting.compiled;
+  const done = new Map<string, WheelBudget | undefined>();
+  return rig.array.gyros.flatMap((gyro) => {
+    const rate = gimbalRateOf(rig, gyro);
+    const { wheel, speed, motor, bearing, housing, spin } = gyro;
+    const key = JSON.stringify([wheel.parts, wheel.balanceGrade, speed, motor, bearing, housing, spin, rate]);
+    if (!done.has(key)) {
+      const stood = standGyro(gyro, rig.power, rate);
+      done.set(key, stood.kind === 'stands' ? budgetOf(stood.standing) : undefined);
+    }
+    const budget = done.get(key);
+    return budget ? [budget] : [];
+  });
+}
+
+function budgetOf(standing: SpinStanding): WheelBudget {
+  const { gyro, drive, wheel, restDrag, hold } = standing;
+  const up = spinUp(drive, wheel.spinInertia, restDrag.total, gyro.speed, 0, PANELS);
+  return {
+    spinUp: up.kind === 'reaches' ? up.spinUp.batteryEnergy : Number.POSITIVE_INFINITY,
+    hold: gyro.spin.kind === 'coasting' ? 0 : hold.kind === 'held' ? hold.flows.battery : Number.NaN,
+    standing,
+  };
+}
+
+/**
+ * Battery of a rig over its job: the current that holding a wheel asks when that cannot be had, else the energy of
+ * bringing all wheels up and running the job. Nothing for a rig without gyros.
+ *
+ * @param schedules  planned axes; empty without a plan, and then the gimbals count as still
+ *
+ * About 0.5 ms for each gyro that is unlike the others. Sources: with DRIVE_FORMULAS.
+ */
+export function batteryLine(setting: PlanSetting, schedules: readonly AxisSchedule[]): readonly LedgerLine[] {
+  const { rig } = setting.compiled;
+  const budgets = wheelBudgets(setting);
+  if (budgets.length === 0) return [];
+  // A wheel that coasts need not be held, only brought up.
+  const short = budgets.flatMap(({ standing, spinUp }) =>
+    standing.hold.kind === 'too fast' && (standing.gyro.spin.kind !== 'coasting' || !Number.isFinite(spinUp))
+      ? [{ standing, hold: standing.hold }]
+      : [],
+  );
+  const worst = short.toSorted((a, b) => b.hold.asked / b.hold.most - a.hold.asked / a.hold.most)[0];
+  if (worst) return [currentLine(worst.standing, worst.hold)];
+  const { cells, cellVoltage, capacity, otherPower } = rig.power;
+  const full = packEnergy(cells, cellVoltage, capacity);
+  const hold = budgets.reduce((sum, budget) => sum + budget.hold, 0);
+  const up = budgets.reduce((sum, budget) => sum + budget.spinUp, 0);
+  const gimbals = meanGimbalPower(setting, schedules);
+  const { duration } = rig.jobs;
+  return [
+    lineOf({
+      name: 'battery',
+      label: 'Battery',
+      dimension: 'energy',
+      ask: [up + (hold + gimbals + otherPower) * duration],
+      have: [USUAL_USABLE_CHARGE * full],
+      askFormula: 'E = spin-up E + (P_wheels + P_gimbals + P_else) × t',
+      haveFormula: 'usable share × cells × V_cell × charge',
+      inputs: [
+        input('Energy to bring all wheels up', up, 'energy'),
+        input('Power to hold all wheels', hold, 'power'),
+        input(GIMBAL_POWER, gimbals, 'power'),
+        input('Power of everything else, legs too', otherPower, 'power'),
+        input('Length of the run', duration, 'time'),
+        input('Usable share', USUAL_USABLE_CHARGE, 'ratio'),
+        input('Energy of the full battery', full, 'energy'),
+      ],
+      source: 'energy balance; straight speed-torque line of a servo; usable share is common practice',
+    }),
+  ];
+}
+
+const currentLine = (
+  { gyro, drive }: SpinStanding,
+  hold: { readonly asked: number; readonly most: number },
+): LedgerLine =>
+  lineOf({
+    name: 'battery',
+    label: 'Battery and motor current',
+    dimension: 'current',
+    ask: [hold.asked],
+    have: [Math.max(0, hold.most)],
+    askFormula: 'I = T_drag / K_t + I_0',
+    haveFormula: 'min(I_limit, (V − K_t ω) / (R + R_b/η))',
+    inputs: [
+      input('Speed', gyro.speed, 'spinRate'),
+      input('Torque constant', drive.torqueConstant, 'torqueConstant'),
+      input('Battery', drive.voltage, 'voltage'),
+      input('Resistance', drive.resistance, 'resistance'),
+      input('Current limit', drive.currentLimit, 'current'),
+    ],
+    source: 'Newton; circuit of a chopper',
+  });
