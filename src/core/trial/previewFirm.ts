@@ -28,12 +28,35 @@ export function stepFirm(run: PreviewRun, setting: FirmPlanSetting, time: number
   placeWalkingBody(run, setting);
   run.effort[2 * model.gimbals] += outside.momentAbout(run.edge, centre(run, 1), centre(run, 2));
   stepRk4(run.derivative, time, state, dt, run.rk4);
-  if (run.side * state[0] <= 0) {
-    state[0] = 0;
-    state[model.baseSpeedAt] = 0;
-    run.side = 0;
-  }
+  if (run.side * state[0] <= 0) land(run, setting, time);
 }
+
+/**
+ * Feet come down flat without a bounce. The blow passes through the far edge, about which the body goes on turning
+ * with the angular momentum it has about that edge, as a rocking block does (Housner, Bull. Seism. Soc. Am. 53,
+ * 1963); too little to lift it over is taken up by the soles.
+ */
+function land(run: PreviewRun, setting: FirmPlanSetting, time: number): void {
+  const { state, model, edge } = run;
+  const [right, left] = supportAt(setting, time);
+  const far = run.side > 0 ? left : right;
+  const { whole } = setting.compiled;
+  const y = centre(run, 1);
+  const z = centre(run, 2);
+  const own = whole.inertia[0];
+  const kept =
+    (own + whole.mass * ((y - edge) * (y - far) + z * z)) / (own + whole.mass * ((y - far) ** 2 + z * z));
+  state[0] = 0;
+  state[model.baseSpeedAt] *= Math.max(0, kept);
+  run.side = run.side > 0 ? -1 : 1;
+  run.edge = far;
+  if (Math.abs(state[model.baseSpeedAt]) > SOFT_LANDING) return;
+  state[model.baseSpeedAt] = 0;
+  run.side = 0;
+}
+
+/** rad/s that soles and ankles take up by giving way. */
+const SOFT_LANDING = 0.1;
 
 /**
  * A blow too quick for the ground to answer: it tips a body that stands flat about the far edge, and adds to the

@@ -311,15 +311,22 @@ export function gainedMomentum(run: PreviewRun): number {
   return sum;
 }
 
-/** Tilts and rates of every gimbal from its servo, and the tilt accelerations that the star is to take. */
+/**
+ * Tilts of every gimbal from its servo, and what the star is to take over the step: a start rate and an acceleration
+ * that end at just those tilts. Servos with play jump in rate within a step, so rates come from the change of tilt:
+ * only so does the body get all the momentum that the array gives up, and no more.
+ */
 export function readGimbals(run: PreviewRun, dt: number): void {
   for (const { group, work } of run.actuators) {
     const tilt = work.state[SERVO_STATE.tilt];
-    const rate = work.state[SERVO_STATE.rate];
     for (const { index, ratio } of group.members) {
-      if (dt > 0) run.effort[index] = (ratio * rate - run.rate[index]) / dt;
+      if (dt > 0) {
+        const rate = (ratio * tilt - run.tilt[index]) / dt;
+        run.effort[index] = (rate - run.rate[index]) / dt;
+        run.state[run.model.rateAt + index] = 0.5 * (rate + run.rate[index]);
+        run.rate[index] = rate;
+      }
       run.tilt[index] = ratio * tilt;
-      run.rate[index] = ratio * rate;
     }
   }
 }

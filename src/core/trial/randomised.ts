@@ -52,6 +52,7 @@ export function runOne(setup: TrialSetup, request: ManyRequest, run: number): Ru
     const kernel = kernelRun(setting, schedules, switches, controller, build, surprises);
     const start = { roll: 0, rollRate: 0, tilt: 0, estimateError: 0, duration: length, seed, run };
     figures = kernelFigures(
+      kernel,
       runRollLoop(kernel.model, createRollLoopWork(kernel.model), kernel.disturbance, start, undefined),
       length,
     );

@@ -1,10 +1,10 @@
 /** The largest shove a rig survives, found by trying, beside what theory allows at most. */
 import { createRollLoopWork, runRollLoop } from '../control';
-import { type AxisArray, extentOf, largestAngularImpulse, pivotHeight } from '../planning';
+import { extentOf, type FirmPlanSetting, largestAngularImpulse, pivotHeight } from '../planning';
 import { AS_DRAWN, type Build } from './build';
 import type { Switches } from './evaluation';
 import { kernelRun, setUpLoop, suitsKernel } from './rollLoop';
-import { judgeTrial, kernelFigures } from './trialRun';
+import { judgeTrial, kernelFigures, type TrialFigures } from './trialRun';
 import type { TrialSetup } from './trialSetup';
 
 export interface ShoveQuestion {
@@ -25,7 +25,7 @@ export interface LargestShove {
   readonly held: number;
   readonly failed: number;
   readonly trials: number;
-  /** N*s that no law could do better than; undefined for a body that rights itself. */
+  /** N*s by the closed form, for a body that stands; undefined for one that rights itself. */
   readonly bound: number | undefined;
   /** What the bound is made of, SI. */
   readonly terms: BoundTerms | undefined;
@@ -53,19 +53,19 @@ const SHARE = 0.002;
  * About 20 trials.
  */
 export function findLargestShove(setup: TrialSetup, question: ShoveQuestion): LargestShove {
-  const bound = boundShove(setup, question);
-  let trials = 0;
+  const calm = judge(setup, { ...question, length: question.at }, 0);
+  const bound = boundShove(setup, question, calm.finalMomentum);
+  let trials = 1;
   const holds = (impulse: number): boolean => {
     trials += 1;
-    return survives(setup, question, impulse);
+    return !judge(setup, question, impulse).hasFallen;
   };
   let held = 0;
   let failed = Math.max(1e-3, (bound?.impulse ?? 1) / 16);
   if (!holds(0)) return { held: 0, failed: 0, trials, bound: bound?.impulse, terms: bound?.terms };
-  while (holds(failed)) {
+  while (failed <= MOST && holds(failed)) {
     held = failed;
     failed *= 2;
-    if (failed > MOST) break;
   }
   while (failed - held > SHARE * failed && failed <= MOST) {
     const middle = 0.5 * (held + failed);
@@ -75,7 +75,7 @@ export function findLargestShove(setup: TrialSetup, question: ShoveQuestion): La
   return { held, failed, trials, bound: bound?.impulse, terms: bound?.terms };
 }
 
-function survives(setup: TrialSetup, question: ShoveQuestion, size: number): boolean {
+function judge(setup: TrialSetup, question: ShoveQuestion, size: number): TrialFigures {
   const { setting, schedules, controller } = setup;
   const { switches, height, at, length, seed, build = AS_DRAWN } = question;
   const impulse = question.side === 'left' ? size : -size;
@@ -83,16 +83,14 @@ function survives(setup: TrialSetup, question: ShoveQuestion, size: number): boo
     const moment = -(height - pivotHeight(setting.compiled)) * impulse;
     const kernel = kernelRun(setting, schedules, switches, controller, build, [[at, moment]]);
     const start = { roll: 0, rollRate: 0, tilt: 0, estimateError: 0, duration: length, seed, run: 0 };
-    const outcome = runRollLoop(
-      kernel.model,
-      createRollLoopWork(kernel.model),
-      kernel.disturbance,
-      start,
-      undefined,
+    const work = createRollLoopWork(kernel.model);
+    return kernelFigures(
+      kernel,
+      runRollLoop(kernel.model, work, kernel.disturbance, start, undefined),
+      length,
     );
-    return !kernelFigures(outcome, length).hasFallen;
   }
-  return !judgeTrial(setting, schedules, {
+  return judgeTrial(setting, schedules, {
     switches,
     controller,
     length,
@@ -101,38 +99,60 @@ function survives(setup: TrialSetup, question: ShoveQuestion, size: number): boo
     seed,
     run: 0,
     surprises: [{ time: at, impulse, height }],
-  }).hasFallen;
+  });
 }
 
 /**
- * The most any law can take from rest: P z = M (1 - exp(-a dH / M)) / a, a = sqrt(k / I), and for feet of some width
- * I a (lean that weight brings back) on top. Undefined for a body that rights itself.
+ * The most that a law can take of a standing body: P z = M (1 - exp(-a dH / M)) / a with a = sqrt(k / I), and for
+ * feet of some width what lifts the weight over their edge, 2 I a sin(rest / 2), on top. M is momentum times the
+ * speed its servo keeps; a gimbal that the gyroscopic load drives faster than that gives a little more. Undefined
+ * for a body that rights itself.
+ *
+ * @param stored N*m*s of roll momentum in the array when the shove comes
  */
 export function boundShove(
   { setting }: TrialSetup,
   question: Pick<ShoveQuestion, 'switches' | 'height' | 'side' | 'at'>,
+  stored = 0,
 ): { readonly impulse: number; readonly terms: BoundTerms } | undefined {
   const outcome = setUpLoop(setting);
-  if (outcome.kind === 'none' || !outcome.loop.topples) return undefined;
-  const { inertia, stiffness } = outcome.loop.plant;
-  const array = setting.axes[0]?.array as AxisArray;
-  const isOn = question.switches.isArrayOn;
+  const array = setting.axes.find(({ axis }) => axis === 'roll')?.array;
+  if (outcome.kind === 'none' || !outcome.loop.topples || !array) return undefined;
+  const { inertia, stiffness, rest } = aboutEdge(setting, question, outcome.loop.plant);
   const isGimballed = array.kind === 'gimballed';
-  // A shove to the left rolls the body to the right about a low line: negative roll, which tilts below zero answer.
-  const reach = question.side === 'left' ? array.tiltMin : array.tiltMax;
-  const momentum = isOn ? (isGimballed ? array.momentum * Math.abs(Math.sin(reach)) : array.momentum) : 0;
+  // A shove to the left leans the body to the left, which is negative roll: tilts below zero answer it.
+  const room =
+    question.side === 'left'
+      ? stored - array.momentum * (isGimballed ? Math.sin(array.tiltMin) : -1)
+      : array.momentum * (isGimballed ? Math.sin(array.tiltMax) : 1) - stored;
+  const momentum = question.switches.isArrayOn ? Math.max(0, room) : 0;
   const torque = isGimballed ? Math.min(array.torque, array.momentum * array.tiltRate) : array.torque;
   const a = Math.sqrt(stiffness / inertia);
-  const arm = question.height - pivotHeight(setting.compiled);
-  const rest = restLean(setting, question);
-  const array0 = momentum > 0 ? largestAngularImpulse({ inertia, stiffness }, momentum, torque) : 0;
-  const impulse = (array0 + inertia * a * rest) / Math.abs(arm);
+  const byArray = momentum > 0 ? largestAngularImpulse({ inertia, stiffness }, momentum, torque) : 0;
+  const arm = Math.abs(question.height - pivotHeight(setting.compiled));
+  const impulse = (byArray + 2 * inertia * a * Math.sin(rest / 2)) / arm;
   return { impulse, terms: { inertia, stiffness, momentum, torque, rest } };
 }
 
+/** Inertia and toppling stiffness about the line a body is shoved over, and the lean its weight brings back from. */
+function aboutEdge(
+  setting: TrialSetup['setting'],
+  question: Pick<ShoveQuestion, 'side' | 'at'>,
+  { inertia, stiffness }: { readonly inertia: number; readonly stiffness: number },
+): { readonly inertia: number; readonly stiffness: number; readonly rest: number } {
+  if (setting.kind !== 'firm') return { inertia, stiffness, rest: 0 };
+  const { whole } = setting.compiled;
+  const rest = restLean(setting, question);
+  const across = whole.com[2] * Math.tan(rest);
+  return {
+    inertia: inertia + whole.mass * across * across,
+    stiffness: stiffness / Math.cos(rest),
+    rest,
+  };
+}
+
 /** rad of lean after which feet would topple over the edge they are shoved towards; nothing for other footings. */
-function restLean(setting: TrialSetup['setting'], { side, at }: Pick<ShoveQuestion, 'side' | 'at'>): number {
-  if (setting.kind !== 'firm') return 0;
+function restLean(setting: FirmPlanSetting, { side, at }: Pick<ShoveQuestion, 'side' | 'at'>): number {
   const { demand, course, problem } = setting;
   const place = Math.floor(at / problem.step + 1e-9);
   const node = course.isCyclic ? place % demand.nodes : Math.min(demand.nodes - 1, place);

@@ -2,7 +2,15 @@
  * One trial: the closed loop with the servos, sensors and loop rate the rig names. The same step as the preview,
  * with the loop ticking at its own rate, late and unevenly, on what the sensors say.
  */
-import { type Controller, createRandom, drawUniform, type RollOutcome, SERVO_STATE } from '../control';
+import {
+  type Controller,
+  createRandom,
+  drawUniform,
+  type RollOutcome,
+  SERVO_STATE,
+  type ServoGimbal,
+} from '../control';
+import { arrayMomentum } from '../physics';
 import type { AxisSchedule, PlanSetting } from '../planning';
 import { AS_DRAWN, type Build } from './build';
 import type { Switches } from './evaluation';
@@ -11,6 +19,7 @@ import { createMotion } from './motionRecorder';
 import { type PreviewRun, prepareRun, type Surprise } from './previewRun';
 import { advanceRun, GONE, LOST, tickRun } from './previewStep';
 import { recordSample } from './recordSample';
+import type { KernelRun } from './rollLoop';
 import { perfectSense, realSense } from './sensing';
 
 /** s, longest step of the body. */
@@ -47,6 +56,8 @@ export interface TrialFigures {
   readonly peakTorque: number;
   /** s that the hardest-worked servo spent at the end of its speed-torque line. */
   readonly saturatedTime: number;
+  /** N*m*s of roll momentum in the array at the end. */
+  readonly finalMomentum: number;
 }
 
 /** Everything recorded, one entry a sample of the motion. */
@@ -223,6 +234,8 @@ function notePeaks(run: PreviewRun, peaks: Peaks): void {
 }
 
 function conclude(run: PreviewRun, peaks: Peaks, fellAt: number | undefined, length: number): TrialFigures {
+  const momentum = new Float64Array(3);
+  arrayMomentum(run.model.array, run.tilt, run.momentum, momentum);
   return {
     hasFallen: fellAt !== undefined,
     fellAt: fellAt ?? length,
@@ -234,11 +247,12 @@ function conclude(run: PreviewRun, peaks: Peaks, fellAt: number | undefined, len
       (most, { work }) => Math.max(most, work.state[SERVO_STATE.saturatedTime] as number),
       0,
     ),
+    finalMomentum: momentum[0] as number,
   };
 }
 
 /** The fast kernel's outcome in the same words. */
-export const kernelFigures = (outcome: RollOutcome, length: number): TrialFigures => ({
+export const kernelFigures = ({ model }: KernelRun, outcome: RollOutcome, length: number): TrialFigures => ({
   hasFallen: outcome.hasFallen,
   fellAt: outcome.hasFallen ? outcome.duration : length,
   peakLean: outcome.peakRoll,
@@ -246,7 +260,14 @@ export const kernelFigures = (outcome: RollOutcome, length: number): TrialFigure
   peakTilt: outcome.peakTilt,
   peakTorque: outcome.peakTorque,
   saturatedTime: outcome.saturatedTime,
+  finalMomentum: model.actuator.kind === 'servo' ? storedIn(model.actuator.gimbals, outcome.finalTilt) : 0,
 });
+
+/** Roll momentum at the tilt of the first gimbal, the others following it. */
+function storedIn(gimbals: readonly ServoGimbal[], tilt: number): number {
+  const lead = gimbals[0]?.follow ?? 1;
+  return gimbals.reduce((sum, g) => sum + g.momentum * Math.sin(g.follow * lead * tilt), 0);
+}
 
 /** A record as CSV: one row a sample, names with units in the first. */
 export function writeTrialCsv({ motion, columns }: TrialRun): string {
