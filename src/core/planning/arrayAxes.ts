@@ -2,22 +2,14 @@
 import type { CompiledRig } from '../physics';
 import { unit3 } from '../physics';
 import type { Gyro, Servo } from '../rig';
+import { type GimbalGroup, gimbalGroups, gimbalInertia, wheelMomentum, workingSpeed } from './gimbalGroups';
 import type { AxisArray } from './momentumPlanProblem';
-
-/** A servo with every gimbal it turns: itself and those geared to it. */
-export interface GimbalGroup {
-  readonly leader: number;
-  readonly members: readonly { readonly index: number; readonly ratio: number }[];
-  readonly servo: Servo;
-  /** N*m*s about x, y, z: momentum = constant + cosine cos(tilt) + sine sin(tilt); ratios of one only. */
-  readonly constant: readonly number[];
-  readonly cosine: readonly number[];
-  readonly sine: readonly number[];
-}
 
 /** Gimbals, or reaction wheels, that work about one body axis as one. */
 export interface ArrayAxis {
   readonly axis: 'roll' | 'pitch';
+  /** True for a stand-in of a steered array: its momentum is planned, and shared among the gimbals afterwards. */
+  readonly isSteered: boolean;
   readonly array: AxisArray;
   /** Gyro and the sign with which it follows the planned tilt (or, for a reaction wheel, its momentum). */
   readonly followers: readonly { readonly gyro: number; readonly sign: number }[];
@@ -27,52 +19,10 @@ export interface ArrayAxis {
 
 export type ArrayAxes =
   | { readonly kind: 'axes'; readonly axes: readonly ArrayAxis[] }
-  | { readonly kind: 'steered'; readonly sentence: string }
+  | { readonly kind: 'steered' }
   | { readonly kind: 'idle'; readonly sentence: string };
 
 const SMALL = 1e-9;
-
-/** Speed a servo can keep while it gives its continuous torque, from its straight speed-torque line, rad/s. */
-export const workingSpeed = (servo: Servo): number =>
-  servo.noLoadSpeed * Math.max(0.05, 1 - servo.continuousTorque / servo.stallTorque);
-
-/** Inertia of a gimbal about its own axis, frame and wheel, kg*m^2. */
-export function gimbalInertia(compiled: CompiledRig, index: number): number {
-  return compiled.model.hingeInertia[index] as number;
-}
-
-/** Momentum of one wheel with its sign, N*m*s. */
-const wheelMomentum = (compiled: CompiledRig, index: number): number =>
-  (compiled.wheels[index]?.spinInertia ?? 0) * (compiled.speeds[index] as number);
-
-/** Groups gimbals by the servo that turns them. Free and locked gimbals belong to no group. O(gyros). */
-export function gimbalGroups(compiled: CompiledRig): readonly GimbalGroup[] {
-  const { gyros } = compiled.rig.array;
-  return gyros.flatMap((gyro, leader): readonly GimbalGroup[] => {
-    if (gyro.drive.kind !== 'servo') return [];
-    const members = gyros.flatMap((other, index) => {
-      if (index === leader) return [{ index, ratio: 1 }];
-      return other.drive.kind === 'geared' && other.drive.leader === leader
-        ? [{ index, ratio: other.drive.ratio }]
-        : [];
-    });
-    const series = { constant: [0, 0, 0], cosine: [0, 0, 0], sine: [0, 0, 0] };
-    for (const { index, ratio } of members) {
-      const member = gyros[index] as Gyro;
-      const g = unit3(member.gimbalAxis);
-      const s = unit3(member.spinAxis);
-      const h = wheelMomentum(compiled, index);
-      const along = g[0] * s[0] + g[1] * s[1] + g[2] * s[2];
-      const across = [g[1] * s[2] - g[2] * s[1], g[2] * s[0] - g[0] * s[2], g[0] * s[1] - g[1] * s[0]];
-      for (let k = 0; k < 3; k++) {
-        series.constant[k] += h * along * (g[k] as number);
-        series.cosine[k] += h * ((s[k] as number) - along * (g[k] as number));
-        series.sine[k] += h * ratio * (across[k] as number);
-      }
-    }
-    return [{ leader, members, servo: gyro.drive.servo, ...series }];
-  });
-}
 
 /** The axis a group works about alone, its torque about the other level axis being nothing; undefined otherwise. */
 function axisOf(group: GimbalGroup): 'roll' | 'pitch' | undefined {
@@ -104,11 +54,7 @@ export function arrayAxes(compiled: CompiledRig): ArrayAxes {
   }
   const sorted = groups.map((group) => ({ group, axis: axisOf(group) }));
   if (sorted.some(({ axis }) => axis === undefined)) {
-    return {
-      kind: 'steered',
-      sentence:
-        'These gimbals each push about several axes at once; a steering law shares the torque among them.',
-    };
+    return { kind: 'steered' };
   }
   const axes = (['roll', 'pitch'] as const).flatMap((axis) => {
     const found = joinGroups(
@@ -149,6 +95,7 @@ function joinGroups(
   const weakest = groups.reduce((a, b) => (workingSpeed(b.servo) < workingSpeed(a.servo) ? b : a));
   return {
     axis,
+    isSteered: false,
     servo: weakest.servo,
     followers,
     array: {
@@ -189,6 +136,7 @@ function reactionAxis(compiled: CompiledRig): ArrayAxis | undefined {
   if (followers.length === 0 || !(momentum > 0)) return undefined;
   return {
     axis: 'roll',
+    isSteered: false,
     servo: undefined,
     followers,
     array: { kind: 'reaction', momentum, tiltMin: 0, tiltMax: 0, tiltRate: 0, torque, servo: null },

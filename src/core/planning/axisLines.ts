@@ -1,8 +1,24 @@
 import type { ArrayAxis } from './arrayAxes';
-import type { LedgerLine } from './ledger';
+import type { LedgerLine, LedgerLineName } from './ledger';
 import { absolute, constant, input, lineOf } from './ledgerLine';
 import type { AxisSchedule } from './momentumPlanCheck';
 import type { PlanSetting } from './rigPlan';
+import { standInLimits } from './steeredAxes';
+
+type RollName = 'rollTorque' | 'momentum' | 'tilt' | 'tiltRate' | 'servoTorque' | 'servoHeat';
+
+/** Pitch has lines of its own beside those of roll. */
+const PITCH_NAMES: Readonly<Record<RollName, LedgerLineName>> = {
+  rollTorque: 'pitchTorque',
+  momentum: 'pitchMomentum',
+  tilt: 'pitchTilt',
+  tiltRate: 'pitchTiltRate',
+  servoTorque: 'pitchServoTorque',
+  servoHeat: 'pitchServoHeat',
+};
+
+const nameFor = (axis: ArrayAxis['axis'], name: RollName): LedgerLineName =>
+  axis === 'roll' ? name : PITCH_NAMES[name];
 
 /** Ledger lines of one planned axis. */
 export function axisLines(
@@ -18,7 +34,7 @@ export function axisLines(
   if (array.kind === 'reaction') {
     return [
       lineOf({
-        name: axis.axis === 'roll' ? 'rollTorque' : 'pitchTorque',
+        name: nameFor(axis.axis, 'rollTorque'),
         label: `Torque in ${of}`,
         dimension: 'torque',
         time,
@@ -30,7 +46,7 @@ export function axisLines(
         source: 'momentum theorem',
       }),
       lineOf({
-        name: 'momentum',
+        name: nameFor(axis.axis, 'momentum'),
         label: `Momentum in ${of}`,
         dimension: 'angularMomentum',
         time,
@@ -43,12 +59,13 @@ export function axisLines(
       }),
     ];
   }
+  if (axis.isSteered) return standInLines(setting, axis, schedule);
   const rate = input('Tilt rate the servo keeps under its continuous torque', array.tiltRate, 'angularRate');
   const limit = input('Tilt limit', array.tiltMax, 'angle');
   const limits = schedule.tilt.map((tilt) => (tilt >= 0 ? array.tiltMax : -array.tiltMin));
   const lines = [
     lineOf({
-      name: axis.axis === 'roll' ? 'rollTorque' : 'pitchTorque',
+      name: nameFor(axis.axis, 'rollTorque'),
       label: `Torque in ${of}`,
       dimension: 'torque',
       time,
@@ -60,7 +77,7 @@ export function axisLines(
       source: 'array law; Wie, Space Vehicle Dynamics and Control, ch. 7',
     }),
     lineOf({
-      name: 'momentum',
+      name: nameFor(axis.axis, 'momentum'),
       label: `Momentum in ${of}`,
       dimension: 'angularMomentum',
       time,
@@ -72,7 +89,7 @@ export function axisLines(
       source: 'array law; Wie, Space Vehicle Dynamics and Control, ch. 7',
     }),
     lineOf({
-      name: 'tilt',
+      name: nameFor(axis.axis, 'tilt'),
       label: `Tilt in ${of}`,
       dimension: 'angle',
       time,
@@ -84,7 +101,7 @@ export function axisLines(
       source: 'array law',
     }),
     lineOf({
-      name: 'tiltRate',
+      name: nameFor(axis.axis, 'tiltRate'),
       label: `Tilt rate in ${of}`,
       dimension: 'angularRate',
       time,
@@ -105,6 +122,47 @@ export function axisLines(
   return servo ? [...lines, ...servoLines(setting, axis, schedule)] : lines;
 }
 
+/** Torque and momentum of a steered array about one axis, against the ellipse inside its envelope. */
+function standInLines(
+  { time }: PlanSetting,
+  { array, axis }: ArrayAxis,
+  schedule: AxisSchedule,
+): readonly LedgerLine[] {
+  const of = axis === 'roll' ? 'roll' : 'pitch';
+  const limits = standInLimits(array);
+  const { momentum: M, tiltRate } = array;
+  const source = 'steering law and envelope; Wie, JGCD 27(2) 2004';
+  return [
+    lineOf({
+      name: nameFor(axis, 'rollTorque'),
+      label: `Torque in ${of}`,
+      dimension: 'torque',
+      time,
+      ask: absolute(schedule.torque),
+      have: schedule.momentum.map((e) => tiltRate * Math.sqrt(Math.max(0, M * M - e * e))),
+      askFormula: '|de/dt|, e the momentum planned',
+      haveFormula: 'r √(M² − e²), the ellipse inside the envelope',
+      inputs: [
+        input('M of the ellipse', M, 'angularMomentum'),
+        input('Torque at rest, r M', limits.torque, 'torque'),
+      ],
+      source,
+    }),
+    lineOf({
+      name: nameFor(axis, 'momentum'),
+      label: `Momentum in ${of}`,
+      dimension: 'angularMomentum',
+      time,
+      ask: absolute(schedule.momentum),
+      have: constant(time.length, limits.momentum),
+      askFormula: '|e|',
+      haveFormula: 'envelope within tilt limits, clear of singularities',
+      inputs: [input('Envelope', limits.momentum, 'angularMomentum')],
+      source,
+    }),
+  ];
+}
+
 function servoLines(
   setting: PlanSetting,
   { array, axis, servo }: ArrayAxis,
@@ -120,7 +178,7 @@ function servoLines(
   const meanTorque = Math.sqrt(squares / schedule.servoTorque.length);
   return [
     lineOf({
-      name: 'servoTorque',
+      name: nameFor(axis, 'servoTorque'),
       label: `Servo torque in ${of}`,
       dimension: 'torque',
       time,
@@ -134,7 +192,7 @@ function servoLines(
       source: 'array law; straight speed-torque line of a servo, common practice',
     }),
     lineOf({
-      name: 'servoHeat',
+      name: nameFor(axis, 'servoHeat'),
       label: `Servo heat in ${of}`,
       dimension: 'torque',
       ask: [meanTorque],

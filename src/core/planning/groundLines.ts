@@ -2,45 +2,64 @@ import { arrayTorque } from '../physics';
 import type { LedgerLine } from './ledger';
 import { input, lineOf } from './ledgerLine';
 import type { AxisSchedule } from './momentumPlanCheck';
-import type { PlanSetting } from './rigPlan';
+import type { FirmPlanSetting, PlanSetting } from './rigPlan';
 
-/** Centre of pressure against the middle of its support, and friction against the yaw leak: firm footing only. */
+/** Centre of pressure against the middle of its support, across and along: firm footing only. O(instants). */
 export function groundLines(setting: PlanSetting, schedules: readonly AxisSchedule[]): readonly LedgerLine[] {
-  if (setting.kind !== 'firm') return [];
-  const { demand, time, axes } = setting;
-  const at = axes.findIndex(({ axis }) => axis === 'roll');
-  const schedule = schedules[at];
-  if (!schedule) return [];
+  if (setting.kind !== 'firm' || schedules.length === 0) return [];
+  const { demand, axes } = setting;
+  const of = (name: 'roll' | 'pitch') => schedules[axes.findIndex(({ axis }) => axis === name)];
+  const roll = of('roll');
+  const pitch = of('pitch');
+  const across = pressureLine(
+    setting,
+    'centreOfPressure',
+    'Centre of pressure across',
+    roll ? (k) => roll.pressure[k] : (k) => demand.bareAcross[k % demand.nodes],
+    demand.acrossMin,
+    demand.acrossMax,
+  );
+  // About pitch the planner measures pressure so that it adds a positive moment: minus x.
+  const along = pressureLine(
+    setting,
+    'pressureAlong',
+    'Centre of pressure along',
+    pitch ? (k) => -pitch.pressure[k] : (k) => demand.bareAlong[k % demand.nodes],
+    demand.alongMin,
+    demand.alongMax,
+  );
+  return [across, along];
+}
+
+function pressureLine(
+  { compiled, demand, time }: FirmPlanSetting,
+  name: 'centreOfPressure' | 'pressureAlong',
+  label: string,
+  pressureAt: (node: number) => number,
+  least: Float64Array,
+  most: Float64Array,
+): LedgerLine {
+  const { footing } = compiled.rig;
   const nodes = time.length;
   const ask = new Float64Array(nodes);
   const have = new Float64Array(nodes);
   for (let k = 0; k < nodes; k++) {
-    const interval = k % demand.intervals;
-    const low = demand.acrossMin[interval] as number;
-    const high = demand.acrossMax[interval] as number;
-    ask[k] = Math.abs((schedule.pressure[k] as number) - (low + high) / 2);
-    have[k] = (high - low) / 2;
+    const interval = Math.min(k % demand.nodes, demand.intervals - 1);
+    ask[k] = Math.abs(pressureAt(k) - (least[interval] + most[interval]) / 2);
+    have[k] = (most[interval] - least[interval]) / 2;
   }
-  return [
-    lineOf({
-      name: 'centreOfPressure',
-      label: 'Centre of pressure',
-      dimension: 'length',
-      time,
-      ask,
-      have,
-      askFormula: '|p − middle of support|, p = (ask − torque) / F',
-      haveFormula: 'half the support across, less the margin',
-      inputs: [
-        input(
-          'Margin',
-          setting.compiled.rig.footing.kind === 'firm' ? setting.compiled.rig.footing.margin : 0,
-          'length',
-        ),
-      ],
-      source: 'Vukobratović & Borovac, Int. J. Humanoid Robotics 1 (2004)',
-    }),
-  ];
+  return lineOf({
+    name,
+    label,
+    dimension: 'length',
+    time,
+    ask,
+    have,
+    askFormula: '|p − middle of support|, p = (ask − torque) / F',
+    haveFormula: 'half the support, less the margin',
+    inputs: [input('Margin', footing.kind === 'firm' ? footing.margin : 0, 'length')],
+    source: 'Vukobratović & Borovac, Int. J. Humanoid Robotics 1 (2004)',
+  });
 }
 
 /** Yaw torque left over, gears and servos off by their backlash, against what friction under the feet holds. */

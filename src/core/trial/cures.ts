@@ -1,6 +1,6 @@
 /** Changes of a rig that would let an impossible plan exist, each proven by planning the changed rig. */
 import { compileRig, wheelStress } from '../physics';
-import { attemptPlan, createPlanWork, defaultPlanOptions, type PlanWork, setUpPlan } from '../planning';
+import { attemptRigPlan, createPlanWork, defaultPlanOptions, type PlanWork, setUpPlan } from '../planning';
 import type { Gyro, PatternGait, Rig } from '../rig';
 import { formatQuantity } from '../units';
 import type { Cure } from './evaluation';
@@ -159,8 +159,8 @@ function hasPlan(rig: Rig | undefined, work: PlanWork): boolean {
   const outcome = compileRig(rig);
   if (outcome.kind === 'refused') return false;
   const set = setUpPlan(outcome.compiled, PROOF_INTERVALS);
-  if (set.kind === 'refused' || set.setting.axes.length === 0) return false;
-  return attemptPlan(set.setting.problem, defaultPlanOptions, work).kind === 'planned';
+  if (set.kind === 'refused') return false;
+  return attemptRigPlan(set.setting, defaultPlanOptions, work).kind === 'planned';
 }
 
 /** Least amount of a remedy that lets a plan exist, to its grain; undefined when none does. */

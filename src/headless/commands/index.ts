@@ -3,6 +3,7 @@ import { balanceCommand } from './balance';
 import { identifyCommand } from './identify';
 import { manyCommand } from './many';
 import { planCommand } from './plan';
+import { sizeCommand } from './size';
 import { spinCommand } from './spin';
 import { trialCommand } from './trial';
 import { weighCommand } from './weigh';
@@ -12,6 +13,7 @@ export const COMMANDS: readonly Command[] = [
   weighCommand,
   spinCommand,
   planCommand,
+  sizeCommand,
   trialCommand,
   manyCommand,
   identifyCommand,
