@@ -5,7 +5,10 @@ const Stage = lazy(() => import('./stage').then((module) => ({ default: module.S
 /** Whether this browser can draw the stage at all; asked before it is mounted. */
 function canDrawStage(): boolean {
   try {
-    return document.createElement('canvas').getContext('webgl2') !== null;
+    const context = document.createElement('canvas').getContext('webgl2');
+    // Given back at once: a browser keeps few contexts, and drops the oldest when they run out.
+    context?.getExtension('WEBGL_lose_context')?.loseContext();
+    return context !== null;
   } catch {
     return false;
   }

@@ -1,4 +1,4 @@
-import { Canvas, events as pointerEvents, type RootState } from '@react-three/fiber';
+import type { RootState } from '@react-three/fiber';
 import { useEffect, useId, useRef, useState, useSyncExternalStore } from 'react';
 import { useDocument } from '../state/document';
 import { NOTHING_SELECTED, useSession } from '../state/session';
@@ -10,25 +10,17 @@ import { type Palette, usePalette } from './palette';
 import { partName } from './parts';
 import { describeInstant } from './poseSummary';
 import { Scene } from './Scene';
+import { StageCanvas } from './StageCanvas';
 import { StageCaption } from './StageCaption';
-import { createStageFrame, FIELD_OF_VIEW } from './stageFrame';
+import { createStageFrame } from './stageFrame';
 import { onStageKeyDown, onStageKeyUp } from './stageKeys';
 import type { ViewAsk } from './Viewpoint';
 import './stage.css';
 
-interface Hit {
-  readonly object: { readonly userData: Record<string, unknown> };
+/** A tap on nothing selects nothing. */
+function clearSelection(event: MouseEvent): void {
+  if (event.type === 'click') useSession.getState().select(NOTHING_SELECTED);
 }
-
-/** Grips are taken before what lies in front of them. */
-const gripsFirst = <T extends Hit>(hits: T[]): T[] => [
-  ...hits.filter((hit) => hit.object.userData.isHandle),
-  ...hits.filter((hit) => !hit.object.userData.isHandle),
-];
-
-const stageEvents: typeof pointerEvents = (store) => ({ ...pointerEvents(store), filter: gripsFirst });
-
-const clearSelection = (): void => useSession.getState().select(NOTHING_SELECTED);
 
 /**
  * The 3D view. Mount it once; it draws the document's rig as the stream has it. Whoever mounts it has asked
@@ -66,18 +58,9 @@ export function Stage() {
       onKeyUp={onStageKeyUp}
       onBlur={onStageKeyUp}
     >
-      <Canvas
-        flat
-        frameloop="demand"
-        dpr={quality === 'low' ? 1 : [1, 2]}
-        gl={{ antialias: quality !== 'low' }}
-        camera={{ fov: FIELD_OF_VIEW, position: [3, 2, 3] }}
-        events={stageEvents}
-        onCreated={onCreated}
-        onPointerMissed={(event) => event.type === 'click' && clearSelection()}
-      >
+      <StageCanvas isLowQuality={quality === 'low'} onCreated={onCreated} onPointerMissed={clearSelection}>
         <Scene palette={palette} ask={ask} />
-      </Canvas>
+      </StageCanvas>
       <ViewButtons onView={(view) => setAsk(({ count }) => ({ view, count: count + 1 }))} />
       <StageCaption palette={palette} />
       <FallNotice />

@@ -1,4 +1,3 @@
-import { OrbitControls } from '@react-three/drei';
 import { useFrame, useThree } from '@react-three/fiber';
 import { useCallback, useEffect, useMemo, useRef } from 'react';
 import { type PerspectiveCamera, Vector3 } from 'three';
@@ -6,15 +5,8 @@ import { type StageInsets, useSession } from '../state/session';
 import { type Box, boxCentre, type Point } from './bodyPlaces';
 import { isDragging } from './dragging';
 import { eyeDirection, frameDistance, freeArea, type View } from './framing';
+import { OrbitView, type ViewControls } from './OrbitView';
 import { FIELD_OF_VIEW, useStage } from './stageFrame';
-
-/** The part of the controls that framing needs; drei's type is of a package of its own. */
-interface Controls {
-  readonly target: Vector3;
-  readonly update: () => void;
-  minDistance: number;
-  maxDistance: number;
-}
 
 /** Turns stage axes (z up) into the renderer's (y up), as the adapter group does for all that is drawn. */
 const toRenderer = ([x, y, z]: Point, out: Vector3): Vector3 => out.set(x, z, -y);
@@ -56,7 +48,7 @@ const bodyPlace = (box: Box, pose: ArrayLike<number>, out: Vector3): Vector3 =>
 /** What the hooks of the viewpoint share: the camera and its controls, and what of the picture is free. */
 function useEye() {
   const camera = useThree((state) => state.camera) as PerspectiveCamera;
-  const controls = useThree((state) => state.controls) as unknown as Controls | null;
+  const controls = useThree((state) => state.controls) as unknown as ViewControls | null;
   const viewport = useThree((state) => state.size);
   const invalidate = useThree((state) => state.invalidate);
   const covered = useSession((state) => state.stageInsets);
@@ -181,18 +173,13 @@ export function Viewpoint({ ask }: { readonly ask: ViewAsk }) {
   useFirstLook(eye, look, isTouched);
   useAsked(eye, look, ask, isTouched);
   useLeash(eye, anchor);
-  return (
-    <OrbitControls
-      makeDefault
-      enableDamping={false}
-      zoomSpeed={0.8}
-      onStart={() => pressed.current.copy(eye.camera.position)}
-      onEnd={() => {
-        // A tap moves nothing and is no wish to look from elsewhere.
-        if (!eye.controls || pressed.current.distanceTo(eye.camera.position) < 1e-9) return;
-        isTouched.current = true;
-        anchor.current.copy(eye.controls.target).sub(bodyPlace(box, frame.instant.pose, work));
-      }}
-    />
-  );
+  const { camera, controls } = eye;
+  const onStart = useCallback(() => pressed.current.copy(camera.position), [camera]);
+  const onEnd = useCallback(() => {
+    // A tap moves nothing and is no wish to look from elsewhere.
+    if (!controls || pressed.current.distanceTo(camera.position) < 1e-9) return;
+    isTouched.current = true;
+    anchor.current.copy(controls.target).sub(bodyPlace(box, frame.instant.pose, work));
+  }, [box, camera, controls, frame]);
+  return <OrbitView onStart={onStart} onEnd={onEnd} />;
 }

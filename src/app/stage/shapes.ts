@@ -8,7 +8,7 @@ import {
   Path,
   Shape,
 } from 'three';
-import { mergeGeometries } from 'three/examples/jsm/utils/BufferGeometryUtils.js';
+import { mergeGeometries } from 'three/addons/utils/BufferGeometryUtils.js';
 
 /** Puts shapes together into one; the parts are let go of. */
 export function merged(parts: BufferGeometry[]): BufferGeometry {
