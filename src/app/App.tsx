@@ -10,6 +10,7 @@ import { useDocument } from './state/document';
 import { useIsNarrow } from './state/looks';
 import { useSession } from './state/session';
 import { findStation } from './stations';
+import { YardBar } from './yard/YardBar';
 
 /** The page: stations on top, the sheet at the left, the ledger at the right, the ribbon below, the stage between. */
 export function App() {
@@ -20,6 +21,7 @@ export function App() {
     <div className="app">
       <Header />
       <StageFrame />
+      <YardBar />
       <Sheet />
       {isNarrow ? <NarrowLedger /> : <LedgerLadder />}
       <Ribbon />
@@ -33,7 +35,8 @@ const LEDGER_WIDTH = 236;
 
 function useStageInsets(isNarrow: boolean): void {
   useEffect(() => {
-    useSession.getState().setStageInsets({ left: 0, right: isNarrow ? 0 : LEDGER_WIDTH, top: 0, bottom: 0 });
+    const { stageInsets, setStageInsets } = useSession.getState();
+    setStageInsets({ ...stageInsets, right: isNarrow ? 0 : LEDGER_WIDTH });
   }, [isNarrow]);
 }
 

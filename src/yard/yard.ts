@@ -74,6 +74,8 @@ export class Yard {
   readonly rig: RigBody;
   readonly objects: { readonly box: YardBox; readonly body: Body }[] = [];
   readonly standing: readonly YardBox[];
+  /** Attitude of the ground plane, w first. */
+  readonly groundAttitude: readonly [number, number, number, number];
   /** s. */
   time = 0;
   /** s; NaN while the rig has not gone over. */
@@ -107,6 +109,7 @@ export class Yard {
     const size = compiled.whole.com[2] + depthBelowOrigin(compiled);
     const ground = groundOf(setting.ground, 2 * size);
     this.floor = new Body({ mass: 0, shape: planeShape() });
+    this.groundAttitude = ground.attitude;
     const [w, x, y, z] = ground.attitude;
     this.floor.quaternion.set(x, y, z, w);
     this.world.addBody(this.floor);

@@ -4,6 +4,7 @@ import type { Group } from 'three';
 import { useDocument } from '../state/document';
 import { useSession } from '../state/session';
 import { stream } from '../state/stream';
+import { useYard } from '../yard/liveYard';
 import { BalanceMarks } from './BalanceMarks';
 import { Ghost } from './Ghost';
 import { Ground } from './Ground';
@@ -20,6 +21,7 @@ import { QuantityArrows } from './QuantityArrows';
 import { createSetting, StageContext, useShown, useStage } from './stageFrame';
 import { type ViewAsk, Viewpoint } from './Viewpoint';
 import { Water } from './Water';
+import { Pushable, YardThings } from './YardThings';
 
 interface SceneProps {
   readonly palette: Palette;
@@ -52,6 +54,7 @@ export function Scene({ palette, ask }: SceneProps) {
         <Ghost />
         <RigModel />
         <BalanceMarks />
+        <YardThings />
       </group>
     </StageContext>
   );
@@ -86,24 +89,27 @@ function RigModel() {
     group.current?.quaternion.set(pose[4], pose[5], pose[6], pose[3]);
   }, -0.6);
   const { body } = rig;
+  const isInYard = useYard((yard) => yard.isOpen);
   return (
     <group ref={group}>
-      {/* biome-ignore lint/a11y/noStaticElementInteractions: a group of the scene, no element of the page. */}
-      <group onClick={selectTapped}>
-        {body.kind === 'legged' && (
-          <>
-            <LeggedTrunk body={body} />
-            <Legs body={body} />
-          </>
-        )}
-        {body.kind === 'hull' && <HullModel body={body} />}
-        {body.kind === 'inline' && <InlineModel body={body} />}
-        <Payloads />
-        <Mounts />
-        <Gyros />
-      </group>
+      <Pushable>
+        {/* biome-ignore lint/a11y/noStaticElementInteractions: a group of the scene, no element of the page. */}
+        <group onClick={selectTapped}>
+          {body.kind === 'legged' && (
+            <>
+              <LeggedTrunk body={body} />
+              <Legs body={body} />
+            </>
+          )}
+          {body.kind === 'hull' && <HullModel body={body} />}
+          {body.kind === 'inline' && <InlineModel body={body} />}
+          <Payloads />
+          <Mounts />
+          <Gyros />
+        </group>
+      </Pushable>
       <QuantityArrows />
-      <Handles />
+      {!isInYard && <Handles />}
     </group>
   );
 }

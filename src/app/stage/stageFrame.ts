@@ -1,6 +1,7 @@
 import { createContext, useContext, useSyncExternalStore } from 'react';
 import type { Rig } from '../../core/rig';
 import { type Evaluated, stream } from '../state/stream';
+import { readYard, useYard } from '../yard/liveYard';
 import { motionScales, type QuantityScales } from './arrowScale';
 import { type Box, boxDiagonal, rigBox } from './bodyPlaces';
 import { isDragging } from './dragging';
@@ -8,6 +9,7 @@ import { rotateInto } from './legPose';
 import { createInstant, type Instant, leanOf, readInstant } from './motionInstant';
 import type { Palette } from './palette';
 import { restInstant } from './restInstant';
+import { readYardInstant } from './yardInstant';
 
 /** Beyond this lean a body is drawn as fallen, whatever the trial says of the end of its run, rad. */
 const FALLEN = 0.9;
@@ -62,6 +64,13 @@ export function createStageFrame(rig: Rig, shown: Evaluated | undefined): StageF
     instant,
     hasFallen: false,
     read: (): void => {
+      const { opened } = useYard.getState();
+      const live = opened && readYard();
+      if (live && opened.layout.gyros === motion.gyros && opened.layout.legs === motion.legs) {
+        readYardInstant(opened.layout, live.before, live.after, live.share, instant);
+        frame.hasFallen = Number.isFinite(live.after[opened.layout.toppledAt]);
+        return;
+      }
       readInstant(motion, stream.seconds, instant);
       const isHeld = holdWhileDragging(instant, shown.centreOfMass);
       frame.hasFallen =
