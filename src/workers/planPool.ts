@@ -1,5 +1,14 @@
 import { type Remote, wrap } from 'comlink';
-import type { SeakeepingOutcome, SizeAsk, SizeOutcome, TradeAsk, TradeCell, Waves } from '../core/planning';
+import type {
+  Holding,
+  HoldingAsk,
+  SeakeepingOutcome,
+  SizeAsk,
+  SizeOutcome,
+  TradeAsk,
+  TradeCell,
+  Waves,
+} from '../core/planning';
 import type { Rig } from '../core/rig';
 import type { PlanCalls } from './planWorker';
 
@@ -17,6 +26,8 @@ export interface PlanPool {
     onRow: (row: number, cells: readonly TradeCell[]) => void,
   ) => PlanTask<void>;
   readonly size: (rig: Rig, ask: SizeAsk) => PlanTask<SizeOutcome>;
+  /** Shove limits and holding times; in words when there are none. */
+  readonly holding: (rig: Rig, ask: HoldingAsk) => PlanTask<Holding | { readonly sentence: string }>;
   readonly seakeeping: (rig: Rig, waves: Waves) => PlanTask<SeakeepingOutcome>;
 }
 
@@ -69,6 +80,10 @@ export function createPlanPool(cores: number): PlanPool {
       return { done: Promise.all(hands.map(workThrough)).then(end), end };
     },
     size: (rig, ask) => single(async (calls): Promise<SizeOutcome> => await calls.size(rig, ask)),
+    holding: (rig, ask) =>
+      single(
+        async (calls): Promise<Holding | { readonly sentence: string }> => await calls.holding(rig, ask),
+      ),
     seakeeping: (rig, waves) =>
       single(async (calls): Promise<SeakeepingOutcome> => await calls.seakeeping(rig, waves)),
   };

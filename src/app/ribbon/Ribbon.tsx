@@ -1,13 +1,16 @@
 import { useMemo } from 'react';
+import type { Jobs } from '../../core/rig';
 import type { Evaluation } from '../../core/trial';
 import { useDocument } from '../state/document';
 import { useIsNarrow } from '../state/looks';
 import { useShown } from '../state/reading';
 import { useSession } from '../state/session';
 import { courseOf, type Evaluated } from '../state/stream';
+import { EventBlock } from './EventBlock';
+import './events.css';
 import { Playhead } from './Playhead';
 import { RibbonPlot } from './RibbonPlot';
-import { countRows, placeBlocks } from './ribbonBlocks';
+import { countRows, eventRows, placeBlocks } from './ribbonBlocks';
 import { lineCurves, momentCurves, momentumCurves, pressureCurves, tiltCurves } from './ribbonCurves';
 import { Transport } from './Transport';
 
@@ -31,7 +34,8 @@ function RibbonBody({ shown }: { readonly shown: Evaluated }) {
   const { motion } = shown;
   const length = motion.samples > 1 ? (motion.time[motion.samples - 1] as number) : 0;
 
-  const cycle = cycleOf(shown, rig.jobs.gait.kind === 'pattern');
+  const { sequence, gait } = rig.jobs;
+  const cycle = cycleOf(shown, gait.kind !== 'stand' && sequence.length === 0);
   const tilt = useMemo(() => tiltCurves(shown, rig, units), [shown, rig, units]);
   const lower = useMemo(() => {
     const line = shown.ledger.lines.find((candidate) => candidate.label === openedLine);
@@ -46,6 +50,7 @@ function RibbonBody({ shown }: { readonly shown: Evaluated }) {
   return (
     <div className="ribbon-body">
       <Blocks shown={shown} cycle={cycle} length={length} />
+      {sequence.length > 0 && <Events sequence={sequence} length={length} />}
       {!isNarrow && <RibbonPlot data={tilt} length={length} hasTimeAxis={false} />}
       <RibbonPlot data={isNarrow && openedLine === undefined ? tilt : lower} length={length} hasTimeAxis />
       <Fall outcome={shown.outcome} length={length} />
@@ -66,8 +71,10 @@ interface BlocksProps {
 
 function Blocks({ shown, length, cycle }: BlocksProps) {
   const course = courseOf(shown);
-  const placed = useMemo(() => placeBlocks(course?.blocks ?? [], cycle, length), [course, cycle, length]);
-  const rows = countRows(course?.blocks ?? []);
+  // Disturbances have blocks of their own, drawn from the rig so that they follow a finger at once.
+  const phases = useMemo(() => course?.blocks.filter(({ kind }) => kind === 'phase') ?? [], [course]);
+  const placed = useMemo(() => placeBlocks(phases, cycle, length), [phases, cycle, length]);
+  const rows = countRows(phases);
   if (rows === 0) return null;
   return (
     <ol className="blocks" style={{ gridTemplateRows: `repeat(${rows}, var(--block-height))` }}>
@@ -80,6 +87,20 @@ function Blocks({ shown, length, cycle }: BlocksProps) {
         >
           <span>{block.label}</span>
         </li>
+      ))}
+    </ol>
+  );
+}
+
+/** Disturbances in as few rows as keep them from lying over one another. */
+function Events({ sequence, length }: { readonly sequence: Jobs['sequence']; readonly length: number }) {
+  const rows = eventRows(sequence, length);
+  return (
+    <ol className="events" aria-label="Sequence">
+      {sequence.map((event, index) => (
+        // Two events may be equal in everything, so their place is their name.
+        // biome-ignore lint/suspicious/noArrayIndexKey: see above
+        <EventBlock key={index} event={event} index={index} row={rows[index] ?? 0} length={length} />
       ))}
     </ol>
   );

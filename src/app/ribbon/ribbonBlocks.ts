@@ -1,3 +1,5 @@
+import { spanOf } from '../../core/planning';
+import type { Jobs } from '../../core/rig';
 import type { RibbonBlock } from '../../core/trial';
 
 /** A block in its place along the ribbon: hundredths of its width. */
@@ -46,3 +48,19 @@ export function placeBlocks(
 /** How many rows the blocks lie in. */
 export const countRows = (blocks: readonly RibbonBlock[]): number =>
   blocks.reduce((most, block) => Math.max(most, block.row + 1), 0);
+
+/** Share of the ribbon that a block takes at least, so that a finger finds it. */
+const LEAST_SHARE = 0.05;
+
+/** A row for each disturbance: the first in which it lies over no other. O(n^2). */
+export function eventRows(sequence: Jobs['sequence'], length: number): readonly number[] {
+  const taken: (readonly [from: number, to: number])[][] = [];
+  return sequence.map((event) => {
+    const [from, end] = spanOf(event);
+    const to = Math.max(end, from + LEAST_SHARE * length);
+    let row = taken.findIndex((spans) => spans.every(([start, stop]) => to <= start || from >= stop));
+    if (row < 0) row = taken.push([]) - 1;
+    taken[row]?.push([from, to]);
+    return row;
+  });
+}

@@ -1,46 +1,46 @@
-import { RigFields, RigKind, RigNumber } from '../../fields/RigFields';
+import { RigNumber } from '../../fields/RigFields';
 import { Toggle } from '../../fields/Toggle';
 import { Group } from '../../sheet/Group';
 import { Refusals } from '../../sheet/Refusals';
 import { useDocument } from '../../state/document';
 import { useSession } from '../../state/session';
+import { Fold } from './Fold';
+import { GaitFields } from './GaitFields';
+import { HoldingFold } from './HoldingFold';
 import { PlanState } from './PlanState';
 import { SequenceFields } from './SequenceFields';
+import { SizeFold } from './SizeFold';
+import { TradeFold } from './TradeFold';
+import { WavesFold } from './WavesFold';
+import './plan.css';
 
-/** How must the gimbals tilt? The gait or the run of disturbances, what to switch off, and whether there is a plan. */
+/** How must the gimbals tilt? The gait or the run of disturbances, whether there is a plan, and what would do. */
 export function PlanSheet() {
   const isLegged = useDocument((document) => document.rig.body.kind === 'legged');
-  const gait = useDocument((document) => document.rig.jobs.gait.kind);
+  const isFirm = useDocument((document) => document.rig.footing.kind === 'firm');
   return (
     <>
       <PlanState />
       <Refusals />
-      <Group title="See what each does">
-        <SwitchFields />
-      </Group>
-      {isLegged && (
-        <Group title="Gait">
-          {gait === 'keyframes' ? (
-            <p>This rig brings its own keyframes; they are kept as they are.</p>
-          ) : (
-            <>
-              <RigKind path={['jobs', 'gait']} label="On its feet" options={['stand', 'pattern']} />
-              <RigFields path={['jobs', 'gait']} hidesKind />
-            </>
-          )}
-        </Group>
-      )}
-      {isLegged && (
-        <Group title="Foot">
-          <RigNumber path={['body', 'foot', 'width']} />
-          <RigNumber path={['body', 'foot', 'length']} />
-          <RigNumber path={['footing', 'margin']} />
-        </Group>
-      )}
       <SequenceFields />
       <Group title="Run">
         <RigNumber path={['jobs', 'duration']} />
       </Group>
+      <GaitFields />
+      {isLegged && (
+        <Fold title="Foot">
+          <RigNumber path={['body', 'foot', 'width']} />
+          <RigNumber path={['body', 'foot', 'length']} />
+          {isFirm && <RigNumber path={['footing', 'margin']} />}
+        </Fold>
+      )}
+      <Fold title="See what each does">
+        <SwitchFields />
+      </Fold>
+      <SizeFold />
+      <TradeFold />
+      <HoldingFold />
+      <WavesFold />
     </>
   );
 }

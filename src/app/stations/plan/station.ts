@@ -1,5 +1,5 @@
+import { lazySheet } from '../lazySheet';
 import type { Station } from '../station';
-import { PlanSheet } from './PlanSheet';
 
 export const PLAN: Station = {
   id: 'plan',
@@ -11,5 +11,5 @@ export const PLAN: Station = {
     if (shown.outcome.kind === 'falls') return 'fails';
     return shown.ledger.lines.some((line) => line.spare < 0) ? 'fails' : 'holds';
   },
-  Sheet: PlanSheet,
+  Sheet: lazySheet(async () => (await import('./PlanSheet')).PlanSheet),
 };
