@@ -4,9 +4,10 @@ import { ASSEMBLE } from './assemble/station';
 import { PLAN } from './plan/station';
 import { SPIN } from './spin/station';
 import type { Station } from './station';
+import { TRIAL } from './trial/station';
 import { WEIGH } from './weigh/station';
 
-export const STATIONS: readonly Station[] = [ASSEMBLE, WEIGH, SPIN, PLAN];
+export const STATIONS: readonly Station[] = [ASSEMBLE, WEIGH, SPIN, PLAN, TRIAL];
 
 /** All seven words in job order; those without a station are not there yet and say so. */
 export const STATION_WORDS: readonly { readonly id: StationId; readonly word: string }[] = [
