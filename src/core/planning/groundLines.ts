@@ -1,5 +1,5 @@
 import { arrayTorque } from '../physics';
-import type { LedgerLine } from './ledger';
+import { type LedgerLine, spareOf } from './ledger';
 import { input, lineOf } from './ledgerLine';
 import type { AxisSchedule } from './momentumPlanCheck';
 import type { FirmPlanSetting, PlanSetting } from './rigPlan';
@@ -7,46 +7,68 @@ import type { FirmPlanSetting, PlanSetting } from './rigPlan';
 /** Centre of pressure against the middle of its support, across and along: firm footing only. O(instants). */
 export function groundLines(setting: PlanSetting, schedules: readonly AxisSchedule[]): readonly LedgerLine[] {
   if (setting.kind !== 'firm' || schedules.length === 0) return [];
-  const { demand, axes } = setting;
-  const of = (name: 'roll' | 'pitch') => schedules[axes.findIndex(({ axis }) => axis === name)];
-  const roll = of('roll');
-  const pitch = of('pitch');
-  const across = pressureLine(
-    setting,
-    'centreOfPressure',
-    'Centre of pressure across',
-    roll ? (k) => roll.pressure[k] : (k) => demand.bareAcross[k % demand.nodes],
-    demand.acrossMin,
-    demand.acrossMax,
-  );
+  const { demand } = setting;
   // About pitch the planner measures pressure so that it adds a positive moment: minus x.
-  const along = pressureLine(
-    setting,
-    'pressureAlong',
-    'Centre of pressure along',
-    pitch ? (k) => -pitch.pressure[k] : (k) => demand.bareAlong[k % demand.nodes],
-    demand.alongMin,
-    demand.alongMax,
-  );
-  return [across, along];
+  const across = plannedPressure(setting, schedules, 'roll', 1) ?? ((node) => demand.bareAcross[node]);
+  const along = plannedPressure(setting, schedules, 'pitch', -1) ?? ((node) => demand.bareAlong[node]);
+  return [
+    pressureLine(setting, 'centreOfPressure', 'Centre of pressure across', across, [
+      demand.acrossMin,
+      demand.acrossMax,
+    ]),
+    pressureLine(setting, 'pressureAlong', 'Centre of pressure along', along, [
+      demand.alongMin,
+      demand.alongMax,
+    ]),
+  ];
 }
 
+/** m, centre of pressure at a node of the demand with the torque of an interval. */
+type PressureAt = (node: number, interval: number) => number;
+
+function plannedPressure(
+  { axes, demand, problem }: FirmPlanSetting,
+  schedules: readonly AxisSchedule[],
+  name: 'roll' | 'pitch',
+  sign: 1 | -1,
+): PressureAt | undefined {
+  const at = axes.findIndex(({ axis }) => axis === name);
+  const schedule = schedules[at];
+  const support = problem.axes[at]?.support;
+  if (!schedule || support?.kind !== 'firm') return undefined;
+  return (node, interval) =>
+    (sign * (support.ask[node] - schedule.torque[interval])) / demand.verticalForce[node];
+}
+
+/** m */
+const SAME_POINT = 1e-6;
+
+/** Both ends of every interval are looked at: its torque is held throughout, the ask is not. */
 function pressureLine(
   { compiled, demand, time }: FirmPlanSetting,
   name: 'centreOfPressure' | 'pressureAlong',
   label: string,
-  pressureAt: (node: number) => number,
-  least: Float64Array,
-  most: Float64Array,
+  pressureAt: PressureAt,
+  [least, most]: readonly [Float64Array, Float64Array],
 ): LedgerLine {
   const { footing } = compiled.rig;
   const nodes = time.length;
   const ask = new Float64Array(nodes);
   const have = new Float64Array(nodes);
   for (let k = 0; k < nodes; k++) {
-    const interval = Math.min(k % demand.nodes, demand.intervals - 1);
-    ask[k] = Math.abs(pressureAt(k) - (least[interval] + most[interval]) / 2);
-    have[k] = (most[interval] - least[interval]) / 2;
+    let worst = Number.POSITIVE_INFINITY;
+    for (const interval of [k - 1, k]) {
+      if (interval < 0 || interval >= nodes - 1) continue;
+      const middle = (least[interval] + most[interval]) / 2;
+      const room = (most[interval] - least[interval]) / 2;
+      const away = Math.abs(pressureAt(k % demand.nodes, interval) - middle);
+      // Where the margin leaves one point alone, rounding is not counted as falling short of it.
+      const off = room === 0 && away < SAME_POINT ? 0 : away;
+      if (!(spareOf(off, room) < worst)) continue;
+      worst = spareOf(off, room);
+      ask[k] = off;
+      have[k] = room;
+    }
   }
   return lineOf({
     name,

@@ -42,6 +42,16 @@ describe('a walk with disturbances', () => {
     expectClose(sum * knocked.setting.problem.step, -0.2 * 0.4, { abs: 1e-12 }, 'angular impulse');
   });
 
+  test('no line of the ledger says that a kept limit is broken, to its very ends', () => {
+    for (const { setting, schedules } of [alone, knocked]) {
+      const lines = ledgerLines(setting, schedules);
+      for (const name of ['centreOfPressure', 'momentum', 'tiltRate', 'servoTorque'] as const) {
+        // a limit that is met to the last digit: measured 1e-7
+        expect(lines.find((line) => line.name === name)?.spare, name).toBeGreaterThan(-1e-6);
+      }
+    }
+  });
+
   test('a walk with no room for a blow says so instead of planning it', () => {
     expect(planOf(withSequence(STRIDER, [{ ...shove, impulse: 5 }])).kind).toBe('impossible');
   });
