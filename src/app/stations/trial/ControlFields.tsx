@@ -9,13 +9,24 @@ import { useTrial } from './trialStore';
 import { computeInto } from './trialWork';
 
 const LAWS: readonly { readonly value: Control['kind']; readonly label: string }[] = [
-  { value: 'computed', label: 'Computed for this hardware' },
-  { value: 'feedback', label: 'Full state feedback, re-centring' },
-  { value: 'pidTilt', label: 'PID from roll to tilt angle' },
-  { value: 'pidTiltRate', label: 'PID from roll to tilt rate' },
+  { value: 'computed', label: 'Computed' },
+  { value: 'feedback', label: 'State feedback' },
+  { value: 'pidTilt', label: 'PID to tilt' },
+  { value: 'pidTiltRate', label: 'PID to tilt rate' },
   { value: 'passive', label: 'Passive gimbal' },
   { value: 'reactionWheel', label: 'Reaction wheel' },
 ];
+
+const ON_PLAN = 'With the plan switched on it acts on what differs from the plan.';
+
+const LAW_WORDS: Readonly<Record<Control['kind'], string>> = {
+  computed: `Gains worked out for this rig’s own servo, sensor and loop whenever it changes. ${ON_PLAN}`,
+  feedback: `Tilt rate from lean, lean rate and tilt, so that the gimbal comes back to the middle. ${ON_PLAN}`,
+  pidTilt: 'Tilt angle from lean, lean gathered and lean rate.',
+  pidTiltRate: 'Tilt rate from lean, lean gathered and lean rate.',
+  passive: 'No servo: the gimbals must be free, which is set under Assemble.',
+  reactionWheel: 'Motor torque from lean, lean rate and wheel speed.',
+};
 
 /** Which law the firmware runs, its gains, and what each term does. */
 export function ControlFields() {
@@ -40,7 +51,7 @@ export function ControlFields() {
         isReadOnly={isReadOnly}
         onChange={(kind) => void choose(kind)}
       />
-      <p className="aside">With the plan switched on, the law acts on what differs from the plan.</p>
+      <p className="aside">{LAW_WORDS[control.kind]}</p>
       {refusal && <p role="alert">{refusal}</p>}
       <RigFields path={['control']} hidesKind />
       <Terms />

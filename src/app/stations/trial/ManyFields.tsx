@@ -1,3 +1,4 @@
+import type { CSSProperties } from 'react';
 import type { QuantityInfo } from '../../../core/rig';
 import {
   type Influence,
@@ -154,7 +155,7 @@ function Influences({ influences }: { readonly influences: readonly Influence[] 
         {influences.map(({ name, share }) => (
           <li key={name}>
             <span>{name === 'knock' ? KNOCK : TOLERANCE_FIELDS[name].label.replace(/, ±.*/, '')}</span>
-            <meter min={0} max={1} value={share} aria-label={`${name}: ${percent(share)}`} />
+            <i style={{ '--share': share } as CSSProperties} aria-hidden />
             <b>{share < 0.005 ? '–' : percent(share)}</b>
           </li>
         ))}

@@ -1,5 +1,5 @@
+import { lazySheet } from '../lazySheet';
 import type { Station } from '../station';
-import { TrialSheet } from './TrialSheet';
 import { useTrial } from './trialStore';
 
 export const TRIAL: Station = {
@@ -11,5 +11,5 @@ export const TRIAL: Station = {
     if (!shown || shown.rig !== rig) return 'notYet';
     return shown.run.figures.hasFallen ? 'fails' : 'holds';
   },
-  Sheet: TrialSheet,
+  Sheet: lazySheet(async () => (await import('./TrialSheet')).TrialSheet),
 };
