@@ -1,4 +1,14 @@
+export {
+  type Bencher,
+  type BenchGivens,
+  type CurveView,
+  createBencher,
+  type LogMapping,
+  type LogOpening,
+} from './bencher';
+export { reduceCurve } from './curveView';
 export { createEvaluator, type Evaluator } from './evaluator';
+export { createPlanPool, type PlanPool, type PlanTask } from './planPool';
 export { createSpinner, type Spinner } from './spinner';
 export { createTrialPool, type ManyTask, type TrialPool } from './trialPool';
 export type { GainMapView, SpeedView, TrialAnswer, TrialQuestion } from './trialWorker';

@@ -1,13 +1,14 @@
 /** The stations that are built, in job order. A new one is one more entry here. */
 import type { StationId } from '../state/session';
 import { ASSEMBLE } from './assemble/station';
+import { BENCH } from './bench/station';
 import { PLAN } from './plan/station';
 import { SPIN } from './spin/station';
 import type { Station } from './station';
 import { TRIAL } from './trial/station';
 import { WEIGH } from './weigh/station';
 
-export const STATIONS: readonly Station[] = [ASSEMBLE, WEIGH, SPIN, PLAN, TRIAL];
+export const STATIONS: readonly Station[] = [ASSEMBLE, WEIGH, SPIN, PLAN, TRIAL, BENCH];
 
 /** All seven words in job order; those without a station are not there yet and say so. */
 export const STATION_WORDS: readonly { readonly id: StationId; readonly word: string }[] = [
