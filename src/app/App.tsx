@@ -1,4 +1,4 @@
-import { useEffect, useState } from 'react';
+import { Suspense, useEffect, useState } from 'react';
 import { saveToBrowser } from './files/keeping';
 import { Header } from './Header';
 import { LedgerLadder, LedgerLineFolded } from './ledger/LedgerLadder';
@@ -48,7 +48,9 @@ function Sheet() {
     <section className="sheet" aria-label={station.word}>
       <h1 className="sheet-question">{station.question}</h1>
       <div className="sheet-body" key={id}>
-        <station.Sheet />
+        <Suspense fallback={<p aria-busy="true">Opening…</p>}>
+          <station.Sheet />
+        </Suspense>
       </div>
     </section>
   );
