@@ -37,7 +37,7 @@ function unitStep(project) {
   step(`${project} tests`, 'node_modules/vitest/vitest.mjs', [
     'run',
     `--project=${project}`,
-    '--reporter=dot',
+    '--reporter=default',
     '--reporter=json',
     `--outputFile.json=${join(reports, report)}`,
   ]);
