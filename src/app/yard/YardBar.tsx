@@ -47,7 +47,8 @@ export function YardBar() {
             </button>
           </div>
           <p className="yard-note">
-            Drag on the rig to push it. Limits and margins come from plan and trial, not from here.
+            <span>Drag on the rig to push it. </span>Limits and margins come from plan and trial, not from
+            here.
           </p>
         </section>
       )}
