@@ -1,11 +1,11 @@
-import { useEffect, useRef, useState } from 'react';
+import { useEffect, useReducer, useRef, useState } from 'react';
 import { FilesDialog } from './files/FilesDialog';
 import { useInstall } from './install/installPrompt';
 import { SettingsDialog } from './sheet/SettingsDialog';
 import { useDocument } from './state/document';
 import { useShown } from './state/reading';
 import { useSession } from './state/session';
-import { findStation, STATION_WORDS, type StationMark } from './stations';
+import { findStation, STATION_WORDS, STATIONS, type StationMark } from './stations';
 
 const MARK_WORDS: Readonly<Record<StationMark, string>> = {
   notYet: 'not yet',
@@ -39,7 +39,14 @@ function Stations() {
   const goTo = useSession((session) => session.goTo);
   const rig = useDocument((document) => document.rig);
   const shown = useShown();
+  const [, markAgain] = useReducer((times: number) => times + 1, 0);
   const nav = useRef<HTMLElement>(null);
+  useEffect(() => {
+    const stops = STATIONS.map((each) => each.onMark?.(markAgain));
+    return () => {
+      for (const stop of stops) stop?.();
+    };
+  }, []);
   // biome-ignore lint/correctness/useExhaustiveDependencies: the word to be seen is that of the station
   useEffect(() => {
     nav.current?.querySelector('[aria-current]')?.scrollIntoView({ block: 'nearest', inline: 'center' });

@@ -13,5 +13,7 @@ export interface Station {
   /** The question it answers. */
   readonly question: string;
   readonly mark: (shown: Evaluated | undefined, rig: Rig) => StationMark;
+  /** Calls when the mark may have changed though rig and evaluation have not; returns the way out. */
+  readonly onMark?: (listener: () => void) => () => void;
   readonly Sheet: ComponentType;
 }

@@ -3,7 +3,6 @@ import { Choice } from '../../fields/Choice';
 import { writeToLikeGyros } from '../../fields/likeGyros';
 import { RigFields } from '../../fields/RigFields';
 import { writeAt } from '../../fields/rigPath';
-import { OwnParts } from '../../parts/OwnParts';
 import { Group } from '../../sheet/Group';
 import { useDocument } from '../../state/document';
 import { useSession } from '../../state/session';
@@ -45,20 +44,17 @@ export function BearingFields({ gyro }: { readonly gyro: number }) {
   };
 
   return (
-    <>
-      <Group title="Bearing">
-        <Choice<string>
-          label="Standard size"
-          options={STOCK_BEARINGS.map((size) => ({ value: size.name, label: sizeWords(size) }))}
-          value={stockOf(bearing)}
-          isReadOnly={isReadOnly}
-          onChange={choose}
-        />
-        <p className="aside">Source: {STOCK_BEARING_SOURCE}.</p>
-        <RigFields path={['array', 'gyros', gyro, 'bearing']} />
-        <ChoiceField choice="preload" usual={0} />
-      </Group>
-      <OwnParts list="bearings" gyro={gyro} />
-    </>
+    <Group title="Bearing">
+      <Choice<string>
+        label="Standard size"
+        options={STOCK_BEARINGS.map((size) => ({ value: size.name, label: sizeWords(size) }))}
+        value={stockOf(bearing)}
+        isReadOnly={isReadOnly}
+        onChange={choose}
+      />
+      <p className="aside">Source: {STOCK_BEARING_SOURCE}.</p>
+      <RigFields path={['array', 'gyros', gyro, 'bearing']} />
+      <ChoiceField choice="preload" usual={0} />
+    </Group>
   );
 }

@@ -30,16 +30,36 @@ export function Cautions({ cautions }: { readonly cautions: readonly Caution[] }
   );
 }
 
-/** The cautions' words alone, at the head of the sheet, so that they are in sight whatever is open below. */
+const DANGERS: Readonly<Partial<Record<CautionKind, string>>> = {
+  burst: 'burst',
+  trap: 'trap',
+  battery: 'burn',
+};
+
+/** The dangers in a few words at the head of the sheet, in sight whatever is scrolled below; a tap leads to them all. */
 export function CautionStrip({ cautions }: { readonly cautions: readonly Caution[] }) {
-  const dangers = cautions.filter(({ kind }) => ['burst', 'printed', 'trap', 'battery'].includes(kind));
-  if (dangers.length === 0) return null;
+  if (cautions.length === 0) return null;
+  const dangers = cautions.flatMap(({ kind }) => DANGERS[kind] ?? []);
+  const isPrinted = cautions.some(({ kind }) => kind === 'printed');
   return (
-    <p className="caution-strip">
+    <button
+      type="button"
+      className="caution-strip"
+      onClick={(event) =>
+        event.currentTarget
+          .closest('.sheet-body')
+          ?.querySelector('.cautions')
+          ?.scrollIntoView({ block: 'start' })
+      }
+    >
       <svg viewBox="0 0 24 22" width="24" height="22" aria-hidden>
         <path d="M12 2 22.5 20.5h-21zM12 9v5M12 16.6v1.4" />
       </svg>
-      <span>{dangers.map(({ kind }) => CAUTION_WORDS[kind]).join(' · ')}: read the cautions below.</span>
-    </p>
+      <span>
+        {dangers.length > 0 && `Can ${dangers.join(', ')}`}
+        {isPrinted && (dangers.length > 0 ? '; printed plastic' : 'Printed plastic')}
+      </span>
+      <small>{cautions.length} cautions ↓</small>
+    </button>
   );
 }

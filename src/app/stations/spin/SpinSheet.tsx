@@ -50,9 +50,11 @@ export function SpinSheet() {
   const shown = sheet?.gyros[Math.min(gyro, sheet.gyros.length - 1)];
   return (
     <>
-      <KeySpin shown={shown} runTime={sheet?.runTime} />
+      <div className="spin-head">
+        <KeySpin shown={shown} runTime={sheet?.runTime} />
+        {sheet && <CautionStrip cautions={sheet.cautions} />}
+      </div>
       <Verdict outcome={outcome} />
-      {sheet && <CautionStrip cautions={sheet.cautions} />}
       <nav className="topics" aria-label="Of the wheel">
         {TOPICS.map((each) => (
           <button key={each} type="button" aria-pressed={each === topic} onClick={() => setTopic(each)}>
@@ -150,6 +152,7 @@ function TopicSheet({ topic, gyro, sheet, shown }: TopicProps) {
           <BearingFields gyro={gyro} />
           <p className="spin-note">Of the load, {shown.rulingLoad}.</p>
           {group('Bearings')}
+          <OwnParts list="bearings" gyro={gyro} />
         </>
       );
     case 'drive':

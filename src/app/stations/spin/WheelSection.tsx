@@ -211,6 +211,18 @@ function HalfPart({
   }
 }
 
+/** Rings have their number on the right, balls on the left, bolts above: often they lie over one another. */
+function numberPlace(shape: PartShape, place: Place): readonly [x: number, y: number] {
+  switch (shape.kind) {
+    case 'ring':
+      return [place.x((shape.inner + shape.outer) / 2), place.y((shape.low + shape.high) / 2) + 4.5];
+    case 'ball':
+      return [place.x(-shape.radius), place.y(shape.height) + 4.5];
+    case 'bolt':
+      return [place.x(shape.radius), MARGIN_TOP - 6];
+  }
+}
+
 function PartNumber({
   number,
   shape,
@@ -220,10 +232,9 @@ function PartNumber({
   readonly shape: PartShape;
   readonly place: Place;
 }) {
-  const radius = shape.kind === 'ring' ? (shape.inner + shape.outer) / 2 : shape.radius;
-  const height = shape.kind === 'ring' ? (shape.low + shape.high) / 2 : shape.height;
+  const [x, y] = numberPlace(shape, place);
   return (
-    <text className="wheel-number" x={place.x(radius)} y={place.y(height) + 4.5}>
+    <text className="wheel-number" x={x} y={y}>
       {number}
     </text>
   );

@@ -1,5 +1,6 @@
 import type { Station } from '../station';
 import { SpinSheet } from './SpinSheet';
+import { useSpinChoices } from './spinChoices';
 import { spinMark } from './spinMark';
 
 export const SPIN: Station = {
@@ -7,5 +8,6 @@ export const SPIN: Station = {
   word: 'Spin up',
   question: 'Can the wheel be spun, safely, on this motor and battery?',
   mark: (_, rig) => spinMark(rig),
+  onMark: (listener) => useSpinChoices.subscribe(listener),
   Sheet: SpinSheet,
 };
