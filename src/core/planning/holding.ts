@@ -29,8 +29,8 @@ export interface HoldingAsk {
 export interface Holding {
   /** N*s at the height asked: sideways, from rest with the array in the middle. */
   readonly fromRest: Figure;
-  /** N*s at each instant of the plan: array and capture point together, sideways, the worse side. */
-  readonly course: { readonly time: Float64Array; readonly impulse: Float64Array };
+  /** N*s at each instant of the plan: array and capture point together, the worse side; undefined without a plan. */
+  readonly course: { readonly time: Float64Array; readonly impulse: Float64Array } | undefined;
   /** Largest and least over the plan, and capture margin (firm only), holding times and what re-centring needs. */
   readonly figures: readonly Figure[];
 }
@@ -114,7 +114,7 @@ export function holdingOf(
   }
   if (bare) figures.push(captureFigure(setting));
   figures.push(...steadyFigures(setting, ask, momentum, arm));
-  return { fromRest, course: { time: setting.time, impulse }, figures };
+  return { fromRest, course: schedule && { time: setting.time, impulse }, figures };
 }
 
 /** Angular impulse that the capture point leaves inside the support at each node, N*m*s; undefined unless firm. */

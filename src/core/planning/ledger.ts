@@ -46,9 +46,15 @@ export interface Ledger {
   readonly lines: readonly LedgerLine[];
 }
 
+/** A limit passed by less than this share of it is met: a plan touches its limits, and digits run out there. */
+const MET = 1e-6;
+
 /** (have - ask) / have, with nothing to have counted as failing. */
-export const spareOf = (ask: number, have: number): number =>
-  have > 0 ? (have - ask) / have : ask > 0 ? Number.NEGATIVE_INFINITY : 0;
+export function spareOf(ask: number, have: number): number {
+  if (!(have > 0)) return ask > 0 ? Number.NEGATIVE_INFINITY : 0;
+  const spare = (have - ask) / have;
+  return spare < 0 && spare > -MET ? 0 : spare;
+}
 
 /** Puts lines in order, the tightest first. */
 export const makeLedger = (lines: readonly LedgerLine[]): Ledger => ({

@@ -72,13 +72,15 @@ function HoldingResults({
       {holding.figures.map((figure) => (
         <FigureRow key={figure.id} figure={figure} />
       ))}
-      <CourseStrip
-        label="Largest shove at each instant (N·s)"
-        time={holding.course.time}
-        values={[holding.course.impulse]}
-        names={['shove']}
-        unit="N·s"
-      />
+      {holding.course && (
+        <CourseStrip
+          label="Largest shove at each instant (N·s)"
+          time={holding.course.time}
+          values={[holding.course.impulse]}
+          names={['shove']}
+          unit="N·s"
+        />
+      )}
     </>
   );
 }

@@ -1,7 +1,7 @@
 import { useCures } from '../../state/cures';
 import { useDocument } from '../../state/document';
 import { useShown } from '../../state/reading';
-import { exportSchedule } from './exportSchedule';
+import { exportPlan, exportSchedule } from './exportSchedule';
 
 /** Whether there is a plan; if none, what forbids it and what would cure it, each cure one tap. */
 export function PlanState() {
@@ -17,23 +17,28 @@ export function PlanState() {
     case 'planned':
       return (
         <div className="plan-state" data-state={fall ? 'fails' : 'holds'}>
-          <h3>Planned</h3>
+          <h2>Planned</h2>
           {fall || <p>The preview holds to the end.</p>}
           <p className="aside">
             {plan.course.time.length} instants · {plan.iterations} solver steps ·{' '}
             {(plan.solveSeconds * 1000).toFixed(0)} ms
           </p>
-          <button type="button" className="wide" onClick={exportSchedule}>
-            Tilt schedule as CSV
-          </button>
+          <div className="plan-files">
+            <button type="button" onClick={exportSchedule}>
+              Schedule as CSV
+            </button>
+            <button type="button" onClick={exportPlan}>
+              Plan as JSON
+            </button>
+          </div>
         </div>
       );
     case 'impossible':
       return (
         <div className="plan-state" data-state="fails">
-          <h3>
+          <h2>
             <b className="word-fails">No plan</b>
-          </h3>
+          </h2>
           <p>{plan.sentence}</p>
           {fall}
           <Cures />
@@ -42,7 +47,7 @@ export function PlanState() {
     case 'unplanned':
       return (
         <div className="plan-state" data-state="notYet">
-          <h3>Not planned</h3>
+          <h2>Not planned</h2>
           <p>{plan.sentence}</p>
           {fall}
         </div>
