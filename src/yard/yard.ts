@@ -186,7 +186,8 @@ export class Yard {
     for (const body of world.bodies) if (body instanceof MomentumBody) body.prepare(step);
     world.step(step);
     this.steps++;
-    this.time = this.steps * step;
+    // Divided, not multiplied: a thousandth has no exact double, a thousand has.
+    this.time = this.steps / (1 / step);
     this.isFlat = this.standsFlat();
     const up = rig.R_WB[8];
     if (Number.isNaN(this.toppledAt) && up < Math.cos(TOPPLED)) this.toppledAt = this.time;
