@@ -2,6 +2,7 @@
 import { mkdirSync, readFileSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { toJsonSchema } from '@valibot/to-json-schema';
+import { HANDOVER_FORMAT, HANDOVER_VERSION, HandoverSchema } from '../src/core/handover';
 import {
   DEMONSTRATIONS,
   PARTS_FORMAT,
@@ -30,6 +31,14 @@ export const partsJsonSchema = (): object => ({
   ...toJsonSchema(PartsSchema, { target: 'draft-07' }),
 });
 
+/** The JSON Schema of a handed-over schedule with gains. */
+export const handoverJsonSchema = (): object => ({
+  $id: `${HANDOVER_FORMAT}.schema.json`,
+  title: 'A tilt schedule and gains',
+  description: `Format "${HANDOVER_FORMAT}", version ${HANDOVER_VERSION}. All numbers in SI: s, rad, rad/s, N·m·s, Hz.`,
+  ...toJsonSchema(HandoverSchema, { target: 'draft-07' }),
+});
+
 export const schemaText = (): string => `${JSON.stringify(rigJsonSchema(), null, 1)}\n`;
 export const rigText = (rig: object): string => `${JSON.stringify(rig, null, 2)}\n`;
 
@@ -37,6 +46,7 @@ export const rigText = (rig: object): string => `${JSON.stringify(rig, null, 2)}
 export const generatedFiles = (): readonly (readonly [path: string, text: string])[] => [
   [`${RIG_FORMAT}.schema.json`, schemaText()],
   [`${PARTS_FORMAT}.schema.json`, `${JSON.stringify(partsJsonSchema(), null, 1)}\n`],
+  [`${HANDOVER_FORMAT}.schema.json`, `${JSON.stringify(handoverJsonSchema(), null, 1)}\n`],
   ...DEMONSTRATIONS.map(({ file, rig }) => [`rigs/${file}`, rigText(rig)] as const),
 ];
 

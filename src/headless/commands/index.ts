@@ -1,6 +1,7 @@
 import type { Command } from '../command';
 import { balanceCommand } from './balance';
 import { fallCommand } from './fall';
+import { handoverCommand } from './handover';
 import { identifyCommand } from './identify';
 import { layoutCommand } from './layout';
 import { manyCommand } from './many';
@@ -24,4 +25,5 @@ export const COMMANDS: readonly Command[] = [
   walkCommand,
   identifyCommand,
   balanceCommand,
+  handoverCommand,
 ];
