@@ -1,6 +1,7 @@
 /** What a steered array gives about roll, and pitch, in the terms the planner takes: an ellipse inside its envelope. */
 import type { CompiledRig } from '../physics';
 import type { ArrayAxis } from './arrayAxes';
+import { workingSpeed } from './gimbalGroups';
 import type { AxisArray } from './momentumPlanProblem';
 import type { PlannedArray } from './rigPlan';
 import { type AxisEnvelope, axisEnvelope, steeredArrayOf } from './steeredArray';
@@ -35,12 +36,13 @@ export function steeredAxes(compiled: CompiledRig, withPitch: boolean): PlannedA
   }
   const isBoth = withPitch && envelope.pitch.momentum > 0;
   const share = isBoth ? SQUARE_IN_CIRCLE : 1;
+  const slowest = array.servos.reduce((a, b) => (workingSpeed(b) < workingSpeed(a) ? b : a));
   const names = isBoth ? (['roll', 'pitch'] as const) : (['roll'] as const);
   const axes = names.map(
     (axis): ArrayAxis => ({
       axis,
       isSteered: true,
-      servo: undefined,
+      servo: slowest,
       followers: [],
       array: shrinkArray(fitEllipse(envelope[axis]), share),
     }),

@@ -42,6 +42,7 @@ import { type FirmOutside, firmOutside } from './firmOutside';
 import { MOVING_BASE, movingBaseCourse } from './movingBase';
 import { PlanPlace } from './planPlace';
 import { type PreviewLaw, previewLaw } from './previewLaw';
+import { createRunSteering, type RunSteering } from './runSteering';
 import type { Sense } from './sensing';
 
 interface Actuator {
@@ -65,6 +66,8 @@ export interface PreviewRun {
   readonly derivative: Derivative;
   readonly rk4: Rk4Work;
   readonly actuators: readonly Actuator[];
+  /** How servos share the law's command; undefined where each follows it with its sign. */
+  readonly steering: RunSteering | undefined;
   /** Carries the torque of reaction wheels through the delay of the loop. */
   readonly motorLine: { readonly servo: ServoModel; readonly work: ServoWork };
   /** Signs of reaction wheels along the roll axis; 0 for any other gyro. */
@@ -144,6 +147,9 @@ export function prepareRun(
   const signOf = (gyro: number): number =>
     roll?.followers.find((follower) => follower.gyro === gyro)?.sign ?? 0;
   const law = previewLaw(setting, schedules, switches, choice.controller);
+  const steering = switches.isArrayOn
+    ? createRunSteering(setting, switches.isPlanOn ? schedules : [])
+    : undefined;
   const work = createStarWork(model);
   const effort = new Float64Array(model.effortSize);
   const outside = setting.kind === 'firm' ? firmOutside(setting, choice.length) : undefined;
@@ -158,6 +164,7 @@ export function prepareRun(
     effort,
     derivative: (_time, at, out) => starDerivative(model, work, at, effort, out),
     rk4: createRk4Work(model.stateSize),
+    steering,
     actuators: mountActuators(setting, model, law, choice, (gyro) => (isReaction ? 0 : signOf(gyro))),
     motorLine: mountMotorLine(compiled, choice.commandRate),
     motorSigns: Float64Array.from({ length: n }, (_, i) => (isReaction ? signOf(i) : 0)),
@@ -179,6 +186,7 @@ export function prepareRun(
     side: 0,
     edge: 0,
   };
+  if (steering) startSteered(run, steering);
   readGimbals(run, 0);
   writeGimbals(run);
   findTorque(run);
@@ -268,9 +276,22 @@ function listJumps(
   ].sort((a, b) => a.time - b.time);
 }
 
+/** Puts servos that share a command where the law begins. */
+function startSteered(run: PreviewRun, steering: RunSteering): void {
+  run.place.moveTo(0);
+  const tilts = steering.tiltsFor(run.law.startTilt, run.place);
+  run.actuators.forEach(({ work }, i) => {
+    resetServo(work, tilts[i]);
+  });
+}
+
 /** Sends the law's commands; they are in force `late` seconds on, servo delay apart. */
 export function sendCommands(run: PreviewRun, late: number): void {
-  for (const { sign, servo, work } of run.actuators) sendCommand(servo, work, sign * run.law.command(), late);
+  const steered = run.steering?.tiltsFor(run.law.command(), run.place);
+  for (let i = 0; i < run.actuators.length; i++) {
+    const { sign, servo, work } = run.actuators[i];
+    sendCommand(servo, work, steered ? steered[i] : sign * run.law.command(), late);
+  }
   sendCommand(run.motorLine.servo, run.motorLine.work, run.law.bodyTorque(), late);
 }
 

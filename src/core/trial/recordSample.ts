@@ -102,6 +102,12 @@ function writePlannedTilt(
 ): void {
   const { setting, model } = run;
   const n = model.gimbals;
+  const shared = run.steering?.planned;
+  if (shared) {
+    run.place.moveTo(motion.time[sample]);
+    for (let i = 0; i < n; i++) motion.plannedTilt[sample * n + i] = run.place.valueOf(shared, n, i);
+    return;
+  }
   setting.axes.forEach((axis, a) => {
     const schedule = schedules[a];
     if (!schedule || axis.array.kind !== 'gimballed') return;

@@ -119,6 +119,7 @@ export function suitsKernel(setting: PlanSetting): setting is LeanPlanSetting {
     setting.kind === 'lean' &&
     axis?.axis === 'roll' &&
     axis.array.kind === 'gimballed' &&
+    !axis.isSteered &&
     setting.compiled.rig.array.gyros.every(({ drive }) => drive.kind === 'servo' || drive.kind === 'geared')
   );
 }
