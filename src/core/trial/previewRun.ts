@@ -133,7 +133,7 @@ export function prepareRun(
 ): PreviewRun {
   const { compiled } = setting;
   const { build } = choice;
-  const model = rollStar(compiled, build);
+  const model = rollStar(compiled, build, !switches.isArrayOn);
   const state = restState(model);
   const n = model.gimbals;
   const momentum = new Float64Array(n);
@@ -195,13 +195,17 @@ export function prepareRun(
 }
 
 /** The star as built. Roll alone is run: feet tip, and a point pivots, about a line that runs forward. */
-function rollStar(compiled: CompiledRig, build: Build): StarModel {
+function rollStar(compiled: CompiledRig, build: Build, isLocked: boolean): StarModel {
   const { footing } = compiled.rig;
   const isTurned = footing.kind === 'firm' || footing.kind === 'point';
   const isDrawn = build.mass === 1 && build.centreUp === 0;
-  if (!isTurned && isDrawn) return compiled.model;
+  const mustLock = isLocked && compiled.star.gyros.some(({ drive }) => drive.kind === 'free');
+  if (!isTurned && isDrawn && !mustLock) return compiled.model;
   return compileStar({
     ...compiled.star,
+    gyros: mustLock
+      ? compiled.star.gyros.map((gyro) => ({ ...gyro, drive: { kind: 'locked' } as const }))
+      : compiled.star.gyros,
     base: isDrawn ? compiled.star.base : builtCarrier(compiled, build),
     footing: isTurned
       ? {

@@ -10,7 +10,7 @@ import {
   SERVO_STATE,
   type ServoGimbal,
 } from '../control';
-import { arrayMomentum } from '../physics';
+import { arrayMomentum, type CompiledRig } from '../physics';
 import type { AxisSchedule, PlanSetting } from '../planning';
 import { AS_DRAWN, type Build } from './build';
 import type { Switches } from './evaluation';
@@ -154,9 +154,23 @@ function paceOf({ compiled }: PlanSetting, length: number): Pace {
   return {
     tick,
     ticks: Math.max(2, Math.round(length * loopRate)),
-    substeps: Math.max(1, Math.ceil(tick / LONGEST_STEP - 1e-9)),
+    substeps: Math.max(1, Math.ceil(tick / LONGEST_STEP - 1e-9), Math.ceil(tick * quickestRate(compiled))),
     every: Math.max(1, Math.round(loopRate / SAMPLES_PER_SECOND)),
   };
+}
+
+/** rad/s of sliding at which a gimbal's friction changes sign, as the star has it. */
+const CREEP_RATE = 0.001;
+
+/** 1/s, the quickest thing a free gimbal does: settle in its damper and friction, or nutate with the body. */
+function quickestRate({ rig, model, speeds, wheels, whole }: CompiledRig): number {
+  return rig.array.gyros.reduce((most, { drive, gimbal }, i) => {
+    if (drive.kind !== 'free') return most;
+    const inertia = model.hingeInertia[i] as number;
+    const momentum = Math.abs((speeds[i] as number) * (wheels[i]?.spinInertia ?? 0));
+    const slope = drive.damping + gimbal.friction + gimbal.stiction / CREEP_RATE;
+    return Math.max(most, slope / inertia + momentum / Math.sqrt(inertia * whole.inertia[0]));
+  }, 0);
 }
 
 function drive(

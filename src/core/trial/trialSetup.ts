@@ -6,7 +6,7 @@ import {
   createPlanWork,
   defaultPlanOptions,
   type PlanSetting,
-  planMomentum,
+  planRig,
   setUpPlan,
 } from '../planning';
 import type { Refusal, Rig } from '../rig';
@@ -31,15 +31,15 @@ export function setUpTrial(rig: Rig): TrialSetupOutcome {
   if (compiled.kind === 'refused') return compiled;
   const set = setUpPlan(compiled.compiled);
   if (set.kind === 'refused') return set;
-  const { setting } = set;
-  const isPlanned = setting.axes.length > 0;
-  const plan = isPlanned ? planMomentum(setting.problem, defaultPlanOptions, createPlanWork()) : undefined;
+  const plan = planRig(set.setting, defaultPlanOptions, createPlanWork());
+  const isPlanned = plan.kind === 'planned';
+  const setting = isPlanned ? plan.setting : set.setting;
   const gains = computeGains(setting);
   return {
     kind: 'ready',
     setup: {
       setting,
-      schedules: plan?.kind === 'planned' ? plan.axes : [],
+      schedules: isPlanned ? plan.schedules : [],
       gains,
       controller: gains.kind === 'report' ? controllerOf(gains.report) : undefined,
     },
