@@ -21,7 +21,7 @@ import { QuantityArrows } from './QuantityArrows';
 import { createSetting, StageContext, useShown, useStage } from './stageFrame';
 import { type ViewAsk, Viewpoint } from './Viewpoint';
 import { Water } from './Water';
-import { Pushable, YardThings } from './YardThings';
+import { Pushable, Sloped, YardThings } from './YardThings';
 
 interface SceneProps {
   readonly palette: Palette;
@@ -49,7 +49,9 @@ export function Scene({ palette, ask }: SceneProps) {
       <Viewpoint ask={ask} />
       {/* The stage is z up, the renderer y up: turned once, here. */}
       <group rotation={[-Math.PI / 2, 0, 0]}>
-        <Ground />
+        <Sloped>
+          <Ground />
+        </Sloped>
         <Water />
         <Ghost />
         <RigModel />

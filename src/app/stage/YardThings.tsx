@@ -1,4 +1,4 @@
-/** What else there is in the yard: its ground when it is not level, boxes that stand and boxes that lie loose, and the finger. */
+/** What else there is in the yard: the tilt of its ground, boxes that stand and boxes that lie loose, and the finger. */
 import { type ThreeEvent, useFrame, useThree } from '@react-three/fiber';
 import { type ReactNode, useEffect, useMemo, useRef } from 'react';
 import {
@@ -7,7 +7,6 @@ import {
   type Group,
   type Mesh,
   Plane,
-  PlaneGeometry,
   Raycaster,
   SphereGeometry,
   Vector2,
@@ -25,10 +24,8 @@ export function YardThings() {
   const invalidate = useThree((state) => state.invalidate);
   useEffect(() => onYardFrame(() => invalidate()), [invalidate]);
   if (!opened) return null;
-  const [w, x, y, z] = opened.attitude;
   return (
     <>
-      {w < 1 && <Slope attitude={[x, y, z, w]} />}
       {opened.standing.map((box) => (
         <group key={box.place.join()} position={[...box.place]} quaternion={turnOf(box)}>
           <BoxModel box={box} isStanding />
@@ -53,17 +50,11 @@ function BoxModel({ box, isStanding }: { readonly box: YardBox; readonly isStand
   return <Inked geometry={geometry} colour={isStanding ? palette.body : palette.cargo} />;
 }
 
-/** A tilted ground as a pale sheet. */
-function Slope({ attitude }: { readonly attitude: Turn }) {
-  const { palette, size } = useStage();
-  const sheet = useGeometry(() => new PlaneGeometry(6 * size, 6 * size, 12, 12), [size]);
-  return (
-    <group quaternion={attitude}>
-      <mesh geometry={sheet} raycast={noRaycast} renderOrder={-2}>
-        <meshBasicMaterial color={palette.line} wireframe />
-      </mesh>
-    </group>
-  );
+/** Tilts the ground it holds as the yard's is tilted. */
+export function Sloped({ children }: { readonly children: ReactNode }) {
+  const attitude = useYard((yard) => yard.opened?.attitude);
+  const [w, x, y, z] = attitude ?? [1, 0, 0, 0];
+  return <group quaternion={[x, y, z, w]}>{children}</group>;
 }
 
 const pose = new Float64Array(7);
