@@ -1,6 +1,9 @@
 import { type ClosedLoopRig, closedLoopRigOf } from '../core/bench';
+import { LAW_GAINS } from '../core/control';
 import { type Caution, compileRig, STANDARD_GRAVITY, spinSheet } from '../core/physics';
+import { setUpPlan } from '../core/planning';
 import type { Rig } from '../core/rig';
+import { computeGains } from '../core/trial';
 
 /** What the rig itself says of the numbers an identification needs besides its log. SI. */
 export interface BenchGivens {
@@ -29,4 +32,26 @@ export function benchGivens(rig: Rig): BenchGivens | undefined {
     cautions: spin?.kind === 'sheet' ? spin.sheet.cautions : [],
     loop: closedLoopRigOf(rig),
   };
+}
+
+/** Gains by name, as they can be sent to a device. */
+export type GainList =
+  | { readonly kind: 'gains'; readonly gains: Readonly<Record<string, number>> }
+  | { readonly kind: 'none'; readonly sentence: string };
+
+/** The gains the rig names, or those computed for it. About 0.1 s. */
+export function listGains(rig: Rig): GainList {
+  const outcome = compileRig(rig);
+  const none = (refusals: readonly { readonly sentence: string }[]): GainList => ({
+    kind: 'none',
+    sentence: refusals.map(({ sentence }) => sentence).join(' '),
+  });
+  if (outcome.kind === 'refused') return none(outcome.refusals);
+  const set = setUpPlan(outcome.compiled);
+  if (set.kind === 'refused') return none(set.refusals);
+  const found = computeGains(set.setting);
+  if (found.kind === 'none') return found;
+  const { loop, gains } = found.report;
+  const names: readonly string[] = LAW_GAINS[loop.law];
+  return { kind: 'gains', gains: Object.fromEntries(names.map((name, k) => [name, gains[k] as number])) };
 }

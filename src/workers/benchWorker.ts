@@ -32,7 +32,7 @@ import {
 } from '../core/bench';
 import type { Rig } from '../core/rig';
 import { createEvaluationWork } from '../core/trial';
-import { type BenchGivens, benchGivens } from './benchGivens';
+import { type BenchGivens, benchGivens, type GainList, listGains } from './benchGivens';
 import { buffersOf } from './buffers';
 import { type CurveView, reduceCurve } from './curveView';
 
@@ -181,6 +181,7 @@ const calls = {
   identify,
   timePendulum,
   givens: (rig: Rig): BenchGivens | undefined => benchGivens(rig),
+  gains: (rig: Rig): GainList => listGains(rig),
   retune: (before: Rig, after: Rig): Retuning =>
     retune(
       before,

@@ -2,7 +2,7 @@ import { proxy, type Remote, wrap } from 'comlink';
 import type { LogProgress } from '../core/bench';
 import type { BenchCalls, LogOpening } from './benchWorker';
 
-export type { BenchGivens } from './benchGivens';
+export type { BenchGivens, GainList } from './benchGivens';
 export type { BenchCalls, LogMapping, LogOpening } from './benchWorker';
 export type { CurveView } from './curveView';
 

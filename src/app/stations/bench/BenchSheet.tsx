@@ -1,17 +1,23 @@
 import { useEffect } from 'react';
 import { create } from 'zustand';
+import { BalancePanel } from './BalancePanel';
 import { BenchCautions } from './BenchCautions';
 import { IdentifyPanel } from './IdentifyPanel';
 import { followGivens } from './identifying';
+import { LinkPanel } from './LinkPanel';
 import { LogPanel } from './LogPanel';
+import { RetunePanel } from './RetunePanel';
 import './bench.css';
 
-const TOPICS = ['log', 'identify'] as const;
+const TOPICS = ['log', 'identify', 'balance', 'link', 'retune'] as const;
 type Topic = (typeof TOPICS)[number];
 
 const TOPIC_WORDS: Readonly<Record<Topic, string>> = {
   log: 'Log',
   identify: 'Identify',
+  balance: 'Balance',
+  link: 'Live link',
+  retune: 'Retune',
 };
 
 /** The part of the bench that is open; it stays so while other stations are looked at. */
@@ -47,5 +53,11 @@ function TopicPanel({ topic }: { readonly topic: Topic }) {
       return <LogPanel />;
     case 'identify':
       return <IdentifyPanel />;
+    case 'balance':
+      return <BalancePanel />;
+    case 'link':
+      return <LinkPanel />;
+    case 'retune':
+      return <RetunePanel />;
   }
 }

@@ -61,6 +61,13 @@ const VERDICT_WORDS: Readonly<Record<TermVerdict, string>> = {
   'cannot-tell': 'something acts, but which cannot be told',
 };
 
+/** An end of the interval to as many digits as its width calls for, so that the two ends can be told apart. */
+const showEnd = (end: number, { low, high }: Estimate): string => {
+  const width = high - low;
+  const places = width > 0 ? Math.floor(Math.log10(Math.abs(end) / width + 1e-12)) : 0;
+  return formatNumber(end, Math.min(9, Math.max(2, places + 3)));
+};
+
 function EstimateRow({ estimate }: { readonly estimate: Estimate }) {
   const { name, value, low, high, unit, verdict } = estimate;
   return (
@@ -70,7 +77,7 @@ function EstimateRow({ estimate }: { readonly estimate: Estimate }) {
         {formatNumber(value, 4)} {unit}
       </b>
       <small>
-        [{formatNumber(low, 3)}, {formatNumber(high, 3)}]{verdict && ` ${VERDICT_WORDS[verdict]}`}
+        [{showEnd(low, estimate)}, {showEnd(high, estimate)}]{verdict && ` ${VERDICT_WORDS[verdict]}`}
       </small>
     </li>
   );

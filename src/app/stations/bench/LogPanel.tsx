@@ -1,4 +1,4 @@
-import { type DragEvent, useEffect, useId, useRef, useState } from 'react';
+import { type DragEvent, useId, useRef, useState } from 'react';
 import type { LogQuantity } from '../../../core/bench';
 import { formatNumber } from '../../../core/units';
 import { Choice } from '../../fields/Choice';
@@ -23,12 +23,14 @@ export function LogPanel() {
       {log && <LogHead log={log} />}
       {log && quantity && (
         <Group title="What it shows">
-          <Choice
-            label="Quantity"
-            options={quantities.map((value) => ({ value, label: QUANTITY_WORDS[value] }))}
-            value={quantity}
-            onChange={setLooked}
-          />
+          {quantities.length > 1 && (
+            <Choice
+              label="Quantity"
+              options={quantities.map((value) => ({ value, label: QUANTITY_WORDS[value] }))}
+              value={quantity}
+              onChange={setLooked}
+            />
+          )}
           <LogPlot log={log} quantity={quantity} />
           <CutFields log={log} />
           <Alignment log={log} quantity={quantity} />
@@ -181,7 +183,6 @@ function Alignment({ log, quantity }: { readonly log: OpenLog; readonly quantity
   const shown = useShown();
   // The prediction is that of the preview on screen: another preview, another answer.
   const hasPrediction = shown !== undefined && predictionOf(quantity) !== undefined;
-  useEffect(() => setBusy(false), []);
   const align = async (): Promise<void> => {
     setBusy(true);
     await alignLog(quantity);

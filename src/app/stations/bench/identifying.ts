@@ -18,12 +18,10 @@ export const useIdentifying = create<IdentifyingState>()(() => ({
 }));
 
 let fitter: Bencher | undefined;
-let asker: Bencher | undefined;
 
 /** Keeps what the rig says of the numbers in step with the document; returns the way to stop. */
 export function followGivens(): () => void {
-  asker = createBencher();
-  const mine = asker;
+  const mine = createBencher();
   const ask = (): void => {
     const { rig } = useDocument.getState();
     void mine.calls.givens(rig).then((givens) => {
