@@ -4,20 +4,23 @@ import type { Rig } from '../core/rig';
 import {
   type Cure,
   createEvaluationWork,
+  diagnose,
   type Evaluation,
+  type Explained,
   evaluate,
   findCures,
   type Switches,
 } from '../core/trial';
 import { buffersOf } from './buffers';
 
-const work = createEvaluationWork(() => performance.now() / 1000);
+const work = createEvaluationWork(() => performance.now() / 1000, true);
 
 const calls = {
   evaluate(rig: Rig, switches: Switches): Evaluation {
     const evaluation = evaluate(rig, switches, work);
     return transfer(evaluation, buffersOf(evaluation));
   },
+  diagnose: (rig: Rig): Explained | undefined => diagnose(rig),
   findCures: (rig: Rig): readonly Cure[] => findCures(rig),
 };
 

@@ -1,11 +1,13 @@
 import { type Remote, wrap } from 'comlink';
 import type { Rig } from '../core/rig';
-import type { Cure, Evaluation, Switches } from '../core/trial';
+import type { Cure, Evaluation, Explained, Switches } from '../core/trial';
 import type { EvaluationCalls } from './evaluationWorker';
 
 /** Whoever answers what a rig comes to. Calls are answered in the order asked; the caller keeps the newest. */
 export interface Evaluator {
   readonly evaluate: (rig: Rig, switches: Switches) => Promise<Evaluation>;
+  /** By how much a rig with no plan falls short; on the worker of the cures. */
+  readonly diagnose: (rig: Rig) => Promise<Explained | undefined>;
   /** Cures of a rig with no plan; on a worker of its own, so that the next evaluation need not wait. */
   readonly findCures: (rig: Rig) => Promise<readonly Cure[]>;
   /** Ends a search for cures that nobody waits for any longer: its promise never settles. */
@@ -28,6 +30,10 @@ export function createEvaluator(): Evaluator {
   };
   return {
     evaluate: (rig, switches) => main.calls.evaluate(rig, switches),
+    diagnose: (rig) => {
+      side ??= startWorker();
+      return side.calls.diagnose(rig);
+    },
     findCures: (rig) => {
       side ??= startWorker();
       return side.calls.findCures(rig);

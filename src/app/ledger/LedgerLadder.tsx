@@ -3,6 +3,7 @@ import { type LedgerLine, tightest } from '../../core/planning';
 import type { PlanView } from '../../core/trial';
 import { formatNumber, fromSI } from '../../core/units';
 import { showQuantity } from '../sheet/showFigure';
+import { useSentence } from '../state/cures';
 import { useShown } from '../state/reading';
 import { useSession } from '../state/session';
 import { stream } from '../state/stream';
@@ -92,8 +93,12 @@ export function LedgerLadder() {
 
 /** Without a plan the ladder knows no asks over time, and must say so before it shows what is left. */
 function NoPlan({ plan }: { readonly plan: PlanView }) {
+  return plan.kind === 'planned' ? null : <Missing plan={plan} />;
+}
+
+function Missing({ plan }: { readonly plan: Exclude<PlanView, { kind: 'planned' }> }) {
   const goTo = useSession((session) => session.goTo);
-  if (plan.kind === 'planned') return null;
+  const sentence = useSentence(plan);
   return (
     <button
       type="button"
@@ -102,7 +107,7 @@ function NoPlan({ plan }: { readonly plan: PlanView }) {
       onClick={() => goTo('plan')}
     >
       <b>{plan.kind === 'impossible' ? 'No plan' : 'Not planned'}</b>
-      <span>{plan.sentence}</span>
+      <span>{sentence}</span>
     </button>
   );
 }

@@ -98,8 +98,11 @@ function createCureSearch(evaluator: Evaluator) {
   };
   const search = async (rig: Rig): Promise<void> => {
     try {
+      const explained = await evaluator.diagnose(rig);
+      if (subject !== rig) return;
+      setCures({ kind: 'searching', explained });
       const found = await evaluator.findCures(rig);
-      if (subject === rig) setCures({ kind: 'found', rig, cures: found });
+      if (subject === rig) setCures({ kind: 'found', rig, explained, cures: found });
     } catch {
       // Without cures the sentence of what forbids the plan still stands.
       if (subject === rig) setCures({ kind: 'none' });
@@ -111,7 +114,7 @@ function createCureSearch(evaluator: Evaluator) {
     drop();
     if (!isImpossible) return;
     subject = rig;
-    setCures({ kind: 'searching' });
+    setCures({ kind: 'searching', explained: undefined });
     timer = setTimeout(() => void search(rig), REST_BEFORE_CURES);
   };
   return { consider, drop };

@@ -2,6 +2,7 @@
 import { type CompiledRig, compileRig, weigh } from '../physics';
 import {
   type AxisSchedule,
+  attemptRigPlan,
   createPlanWork,
   defaultPlanOptions,
   eventBlocks,
@@ -17,7 +18,7 @@ import {
 } from '../planning';
 import type { Rig } from '../rig';
 import type { Evaluation, PlanCourse, PlanView, RibbonBlock, Switches } from './evaluation';
-import { explainImpossible } from './planWords';
+import { type Explained, explainImpossible, nameImpossible } from './planWords';
 import { runPreview } from './preview';
 
 /** Scratch of one evaluator: replanning with the same work starts from the last plan. */
@@ -25,11 +26,14 @@ export interface EvaluationWork {
   readonly plan: PlanWork;
   /** Seconds from any fixed instant; measures solve time. The core itself has no clock. */
   readonly clock: () => number;
+  /** True: an impossible plan is only named; `diagnose` says by how much, in the time of some twenty plans. */
+  readonly isBrief: boolean;
 }
 
-export const createEvaluationWork = (clock: () => number): EvaluationWork => ({
+export const createEvaluationWork = (clock: () => number, isBrief = false): EvaluationWork => ({
   plan: createPlanWork(),
   clock,
+  isBrief,
 });
 
 /**
@@ -68,6 +72,16 @@ function fullInertia({ whole }: CompiledRig): readonly number[] {
   return [xx, xy, xz, xy, yy, yz, xz, yz, zz];
 }
 
+/** Why a rig has no plan and by how much, in words; undefined when it has one, or nothing to plan with. */
+export function diagnose(rig: Rig): Explained | undefined {
+  const compiled = compileRig(rig);
+  if (compiled.kind === 'refused') return undefined;
+  const set = setUpPlan(compiled.compiled);
+  if (set.kind === 'refused') return undefined;
+  const outcome = planRig(set.setting, defaultPlanOptions, createPlanWork());
+  return outcome.kind === 'impossible' ? explainImpossible(outcome) : undefined;
+}
+
 interface Planned {
   readonly plan: PlanView;
   readonly schedules: readonly AxisSchedule[];
@@ -77,7 +91,8 @@ interface Planned {
 function planOf(setting: PlanSetting, work: EvaluationWork): Planned {
   const none = (plan: PlanView): Planned => ({ plan, schedules: [], setting });
   const start = work.clock();
-  const outcome = planRig(setting, defaultPlanOptions, work.plan);
+  const plan = work.isBrief ? attemptRigPlan : planRig;
+  const outcome = plan(setting, defaultPlanOptions, work.plan);
   const solveSeconds = work.clock() - start;
   switch (outcome.kind) {
     case 'planned': {
@@ -102,7 +117,7 @@ function planOf(setting: PlanSetting, work: EvaluationWork): Planned {
     case 'impossible':
       return none({
         kind: 'impossible',
-        ...explainImpossible(outcome),
+        ...('failures' in outcome ? nameImpossible(outcome.failures) : explainImpossible(outcome)),
         cures: [],
         course: courseOf(setting, []),
       });

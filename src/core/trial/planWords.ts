@@ -1,4 +1,4 @@
-import type { LedgerLineName, LimitName, MomentumPlanOutcome } from '../planning';
+import type { AxisFailure, LedgerLineName, LimitName, MomentumPlanOutcome } from '../planning';
 import { type Dimension, formatQuantity } from '../units';
 
 interface LimitWords {
@@ -21,11 +21,27 @@ const WORDS: Readonly<Record<LimitName, LimitWords>> = {
   'mean moment': { line: 'rollTorque', dimension: 'torque', noun: 'mean moment over the cycle' },
 };
 
-/** Says which limit forbids a plan and by how much, in words with units. */
-export function explainImpossible(outcome: Extract<MomentumPlanOutcome, { kind: 'impossible' }>): {
+/** What forbids a plan, and the ledger line it belongs to. */
+export interface Explained {
   readonly line: LedgerLineName;
   readonly sentence: string;
-} {
+}
+
+/** Names the limit that weighs most in the proof that there is no plan; by how much it falls short takes more solves. */
+export function nameImpossible(failures: readonly AxisFailure[]): Explained {
+  const weight = new Map<LimitName, number>();
+  for (const { certificate, rowLimit } of failures) {
+    rowLimit.forEach((limit, row) => {
+      weight.set(limit, (weight.get(limit) ?? 0) + Math.abs(certificate.dual[row] ?? 0));
+    });
+  }
+  const [limit] = [...weight].reduce((a, b) => (b[1] > a[1] ? b : a), ['momentum', 0] as [LimitName, number]);
+  const { line, noun } = WORDS[limit];
+  return { line, sentence: `No plan exists: ${noun} falls short.` };
+}
+
+/** Says which limit forbids a plan and by how much, in words with units. */
+export function explainImpossible(outcome: Extract<MomentumPlanOutcome, { kind: 'impossible' }>): Explained {
   const { line, dimension, noun } = WORDS[outcome.limit];
   const short = formatQuantity(outcome.shortBy, dimension);
   if (outcome.limit === 'mean moment') {

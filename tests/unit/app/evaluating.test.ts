@@ -41,6 +41,7 @@ function slowEvaluator() {
           fail: (error) => settle(() => reject(error)),
         });
       }),
+    diagnose: () => Promise.resolve({ line: 'momentum', sentence: 'Short by so much.' } as const),
     findCures: (rig) => {
       sought.push(rig);
       return Promise.resolve([{ sentence: 'Wider feet', rig } satisfies Cure]);

@@ -1,4 +1,5 @@
-import { useCures } from '../../state/cures';
+import type { PlanView } from '../../../core/trial';
+import { useCures, useSentence } from '../../state/cures';
 import { useDocument } from '../../state/document';
 import { useShown } from '../../state/reading';
 import { exportPlan, exportSchedule } from './exportSchedule';
@@ -39,7 +40,7 @@ export function PlanState() {
           <h2>
             <b className="word-fails">No plan</b>
           </h2>
-          <p>{plan.sentence}</p>
+          <Why plan={plan} />
           {fall}
           <Cures />
         </div>
@@ -53,6 +54,10 @@ export function PlanState() {
         </div>
       );
   }
+}
+
+function Why({ plan }: { readonly plan: Exclude<PlanView, { kind: 'planned' }> }) {
+  return <p>{useSentence(plan)}</p>;
 }
 
 function Cures() {
