@@ -77,8 +77,8 @@ const calls = {
     yard = undefined;
     listener = undefined;
   },
-  touch: (point: Triple, target: Triple): void => yard?.touch(point, target),
-  release: (): void => yard?.release(),
+  touch: (point: Triple, target: Triple): void => yard?.hand.touch(point, target),
+  release: (): void => yard?.hand.release(),
   kick: (impulse: Triple, point: Triple): void => yard?.kick(impulse, point),
   /** Lets a block fall from a place given from the body's origin, m, world axes; returns all loose boxes. */
   drop(box: YardBox): readonly YardBox[] {

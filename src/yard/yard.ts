@@ -5,43 +5,32 @@
  *
  * No figure that the star can give is taken from here: the yard shows what contact does.
  */
-import { Body, type ContactEquation, Quaternion, Vec3, type World } from 'cannon-es';
-import {
-  arrayMomentum,
-  arrayTorque,
-  type CompiledRig,
-  STANDARD_GRAVITY,
-  type StarModel,
-} from '../core/physics';
+import { Body, type ContactEquation, type Quaternion, Vec3, type World } from 'cannon-es';
+import { arrayMomentum, arrayTorque, STANDARD_GRAVITY, type StarModel } from '../core/physics';
 import type { Refusal } from '../core/rig';
 import type { Doubt, Switches } from '../core/trial';
 import { createContactWorld, USUAL_FRICTION } from './contactWorld';
 import { boxInertiaMatrix, boxShape, type GroundChoice, groundOf, planeShape, type YardBox } from './ground';
-import { GroundPin } from './groundPin';
+import { Hand } from './hand';
 import { MomentumBody } from './momentumBody';
-import { type FreeGimbal, RigBody } from './rigBody';
+import type { RigBody } from './rigBody';
 import { prepareRigLoop, type RigLoop } from './rigLoop';
-import { depthBelowOrigin, isPinned, rigShapes } from './rigShapes';
+import { placeRig, type RigStart } from './rigPlacing';
+import { depthBelowOrigin } from './rigShapes';
 import { MOST_OBJECTS, type SnapshotLayout, snapshotLayout } from './snapshot';
 
 /** s. */
 export const YARD_STEP = 0.001;
 /** Lean counted as gone over, rad. */
 const TOPPLED = 0.9;
-/** A finger pushes at most so many times the rig's weight. */
-const FINGER_MOST = 1.5;
 
-export interface YardSetting {
-  readonly compiled: CompiledRig;
+export interface YardSetting extends RigStart {
   readonly ground: GroundChoice;
   readonly switches: Switches;
   /** How the rig differs from its drawing. */
   readonly doubt: Doubt;
   /** s; YARD_STEP when left out. */
   readonly step?: number;
-  /** Roll and its rate at the start, rad and rad/s: about the line a pinned rig turns on, else about its foot. */
-  readonly lean?: number;
-  readonly leanRate?: number;
 }
 
 export type YardOutcome =
@@ -54,19 +43,6 @@ export function openYard(setting: YardSetting): YardOutcome {
   const outcome = prepareRigLoop(setting.compiled, setting.switches, setting.doubt, step);
   if (outcome.kind === 'refused') return outcome;
   return { kind: 'ready', yard: new Yard(setting, outcome.loop, step) };
-}
-
-interface Finger {
-  /** m, body frame. */
-  readonly point: readonly [number, number, number];
-  /** m, world. */
-  readonly target: Vec3;
-}
-
-interface Push {
-  readonly force: Vec3;
-  readonly point: readonly [number, number, number];
-  readonly until: number;
 }
 
 export class Yard {
@@ -82,14 +58,11 @@ export class Yard {
   toppledAt = Number.NaN;
   private readonly world: World;
   private readonly floor: Body;
-  private finger: Finger | undefined;
-  private fingerForce = 0;
-  private readonly pushes: Push[] = [];
+  /** Finger and pushes on the rig. */
+  readonly hand: Hand;
   private steps = 0;
   private isFlat = true;
   private readonly arm = new Vec3();
-  private readonly force = new Vec3();
-  private readonly lever = new Vec3();
   private readonly wheelMomentum: Float64Array;
   private readonly pair = new Float64Array(3);
 
@@ -117,56 +90,10 @@ export class Yard {
     for (const box of this.standing) this.world.addBody(placed(new Body({ mass: 0 }), box));
     for (const box of ground.boxes) if (box.mass > 0) this.lay(box);
 
-    this.rig = this.makeRig();
+    this.rig = placeRig(setting, loop, this.world, this.floor, step);
+    this.hand = new Hand(this.rig, whole.mass, whole.com[2]);
     this.layout = snapshotLayout(compiled.model.gimbals, loop.setting.gait.legs);
     this.wheelMomentum = new Float64Array(compiled.model.gimbals);
-  }
-
-  private makeRig(): RigBody {
-    const { compiled, lean = 0, leanRate = 0 } = this.setting;
-    const { rig, model } = compiled;
-    const { loop } = this;
-    const { legs } = loop.setting.gait;
-    const base = new Float64Array(16);
-    const feet = new Float64Array(3 * legs);
-    loop.placeLegs(0, base, feet);
-    const body = new RigBody(
-      { model, shapes: rigShapes(compiled), free: freeGimbals(compiled), base, feet },
-      this.world.gravity,
-    );
-    loop.startTilts(body);
-    const turn = new Quaternion();
-    turn.setFromAxisAngle(new Vec3(1, 0, 0), lean);
-    const tilted = this.floor.quaternion.mult(turn);
-    const pivot = pivotOf(compiled, lean);
-    const lift = depthBelowOrigin(compiled);
-    const [px, py, pz] = pivot;
-    const from = turn.vmult(new Vec3(px, py, pz));
-    const [sx, sy] = loop.startPlace();
-    const origin = this.floor.quaternion.vmult(
-      new Vec3(sx - from.x + px, sy - from.y + py, pz - from.z + lift),
-    );
-    const [vx, vy, vz] = loop.startVelocity();
-    const spin = tilted.vmult(new Vec3(leanRate, 0, 0));
-    const swing = spin.cross(tilted.vmult(new Vec3(-px, -py, -pz)));
-    const walk = this.floor.quaternion.vmult(new Vec3(vx, vy, vz));
-    body.place(
-      [origin.x, origin.y, origin.z],
-      [tilted.w, tilted.x, tilted.y, tilted.z],
-      [walk.x + swing.x, walk.y + swing.y, walk.z + swing.z],
-      [leanRate, 0, 0],
-      loop.speeds(),
-    );
-    this.world.addBody(body);
-    if (isPinned(rig)) {
-      const at = new Vec3(px, py, pz + lift);
-      const { contactEquationStiffness } = this.world.defaultContactMaterial;
-      const isLine = rig.footing.kind === 'edge';
-      this.world.addConstraint(
-        new GroundPin(body, this.floor, pivot, at, isLine, contactEquationStiffness, this.step),
-      );
-    }
-    return body;
   }
 
   /** Runs whole steps for a time; what is left of a step stays for the next call's caller to count. */
@@ -179,10 +106,7 @@ export class Yard {
     const { rig, world, step } = this;
     const R = rig.R_WB;
     this.loop.move(rig, this.time, Math.atan2(R[7], R[8]), rig.rate_B[0], this.isFlat);
-    this.applyFinger();
-    for (const { force, point, until } of this.pushes) {
-      if (this.time < until - 1e-12) this.applyAt(force, point);
-    }
+    this.hand.apply(this.time);
     for (const body of world.bodies) if (body instanceof MomentumBody) body.prepare(step);
     world.step(step);
     this.steps++;
@@ -193,24 +117,13 @@ export class Yard {
     if (Number.isNaN(this.toppledAt) && up < Math.cos(TOPPLED)) this.toppledAt = this.time;
   }
 
-  /** Puts a finger on the rig: at a point of the body frame, pulling it towards a place in the world, m. */
-  touch(point: readonly [number, number, number], target: readonly [number, number, number]): void {
-    this.finger = { point, target: new Vec3(...target) };
-  }
-
-  /** Takes the finger away. */
-  release(): void {
-    this.finger = undefined;
-    this.fingerForce = 0;
-  }
-
   /** A force (N, world) on a point of the body frame for a time, s. */
   push(
     force: readonly [number, number, number],
     point: readonly [number, number, number],
     seconds: number,
   ): void {
-    this.pushes.push({ force: new Vec3(...force), point, until: this.time + seconds });
+    this.hand.push(force, point, this.time + seconds);
   }
 
   /** An impulse (N*s, world) on a point of the body frame, now. */
@@ -244,34 +157,6 @@ export class Yard {
     body.setMassProperties(box.mass, boxInertiaMatrix(box));
     this.world.addBody(body);
     this.objects.push({ box, body });
-  }
-
-  private applyAt(force: Vec3, point: readonly [number, number, number]): void {
-    this.rig.armTo(point, this.arm);
-    this.rig.force.vadd(force, this.rig.force);
-    this.arm.cross(force, this.lever);
-    this.rig.torque.vadd(this.lever, this.rig.torque);
-  }
-
-  /** The finger as a damped spring that gives way at its most. */
-  private applyFinger(): void {
-    const { finger, rig, force } = this;
-    if (!finger) return;
-    const { whole } = this.setting.compiled;
-    const weight = whole.mass * STANDARD_GRAVITY;
-    const stiffness = weight / (0.5 * Math.max(0.05, whole.com[2]));
-    const damping = 0.2 * Math.sqrt(stiffness * whole.mass);
-    rig.armTo(finger.point, this.arm);
-    rig.angularVelocity.cross(this.arm, this.lever);
-    for (const axis of ['x', 'y', 'z'] as const) {
-      const speed = rig.velocity[axis] + this.lever[axis];
-      force[axis] = stiffness * (finger.target[axis] - rig.position[axis] - this.arm[axis]) - damping * speed;
-    }
-    const size = force.length();
-    const most = FINGER_MOST * weight;
-    if (size > most) force.scale(most / size, force);
-    this.fingerForce = Math.min(size, most);
-    this.applyAt(force, finger.point);
   }
 
   /** Whether feet press on both sides of themselves: the rig is not tipping. */
@@ -342,8 +227,9 @@ export class Yard {
   }
 
   private writeFinger(out: Float64Array): void {
-    const { layout, finger } = this;
-    out[layout.fingerForce] = this.fingerForce;
+    const { layout } = this;
+    const { finger, fingerForce } = this.hand;
+    out[layout.fingerForce] = fingerForce;
     if (!finger) {
       out.fill(Number.NaN, layout.finger, layout.finger + 6);
       return;
@@ -379,39 +265,6 @@ function placed(body: Body, box: YardBox): Body {
   const [w, x, y, z] = box.attitude;
   body.quaternion.set(x, y, z, w);
   return body;
-}
-
-/** Point of the body frame the rig leans about at its start, m: the pin, the round's lowest point, or an edge of a foot. */
-function pivotOf({ rig, whole }: CompiledRig, lean: number): readonly [number, number, number] {
-  switch (rig.footing.kind) {
-    case 'edge':
-      return [0, rig.footing.offset, 0];
-    case 'point':
-      return rig.footing.position;
-    case 'firm': {
-      if (rig.body.kind !== 'legged' || lean === 0) return [0, 0, 0];
-      const wide = rig.jobs.gait.kind === 'pattern' ? rig.jobs.gait.stanceWidth : rig.body.hips.width;
-      return [0, -Math.sign(lean) * (wide / 2 + rig.body.foot.width / 2), 0];
-    }
-    case 'rocker':
-      return [0, 0, 0];
-    case 'float':
-      return [0, 0, whole.com[2]];
-  }
-}
-
-function freeGimbals({ rig }: CompiledRig): readonly (FreeGimbal | null)[] {
-  return rig.array.gyros.map(({ drive, gimbal, tilt }) => {
-    if (drive.kind !== 'free') return null;
-    return {
-      stiffness: drive.stiffness,
-      damping: drive.damping + gimbal.friction,
-      coulomb: 0.7 * gimbal.stiction,
-      stiction: gimbal.stiction,
-      tiltMin: tilt.min,
-      tiltMax: tilt.max,
-    };
-  });
 }
 
 function writeVector(v: Vec3, out: Float64Array, at: number): void {

@@ -63,7 +63,7 @@ describe('pushes', () => {
     const out = new Float64Array(yardOf(stood).layout.size);
     const pushed = (far: number): { lean: number; force: number } => {
       const yard = yardOf(stood);
-      yard.touch([0, 0, 0.45], [0, far, 0.45]);
+      yard.hand.touch([0, 0, 0.45], [0, far, 0.45]);
       yard.run(250);
       yard.snapshot(out);
       return { lean: Math.abs(yard.lean), force: out[yard.layout.fingerForce] as number };

@@ -7,8 +7,8 @@ import { yardOf } from '../../support/yardCases';
 function worked(bundles: readonly number[]): Float64Array {
   const yard = yardOf(STRIDER, { ground: { kind: 'blocks' } });
   const hands = new Map<number, () => void>([
-    [120, () => yard.touch([0, 0.085, 0.45], [0, 0.2, 0.45])],
-    [220, () => yard.release()],
+    [120, () => yard.hand.touch([0, 0.085, 0.45], [0, 0.2, 0.45])],
+    [220, () => yard.hand.release()],
     [240, () => yard.kick([0, -0.3, 0], [0, 0, 0.4])],
     [
       340,
