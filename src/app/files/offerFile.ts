@@ -8,9 +8,9 @@ export function fileNameFor(title: string, ending: string): string {
   return `${plain.slice(0, 60) || 'rig'}.${ending}`;
 }
 
-/** Hands a text to the browser as a file to be saved. */
-export function offerFile(name: string, text: string, type: string): void {
-  const address = URL.createObjectURL(new Blob([text], { type }));
+/** Hands a text or bytes to the browser as a file to be saved. */
+export function offerFile(name: string, content: BlobPart, type: string): void {
+  const address = URL.createObjectURL(new Blob([content], { type }));
   const link = document.createElement('a');
   link.href = address;
   link.download = name;

@@ -207,7 +207,7 @@ export function makeHandover(rig: Rig, imprint: Imprint, clock: () => number): H
   const portrait = drawRig(rig);
   const pictures: readonly SheetPicture[] = [
     { kind: 'svg', caption: `${rig.name} at rest, seen from the front left and above.`, svg: portrait },
-    ...plots.map(({ title, svg }) => ({ kind: 'svg' as const, caption: title, svg })),
+    ...plots.map(({ svg }) => ({ kind: 'svg' as const, caption: '', svg })),
   ];
   const sheet = makeSheet(findings, imprint);
   const svgType = 'image/svg+xml';

@@ -97,7 +97,7 @@ export function drawRig(rig: Rig): string {
     ({ points, fill }) => `<path d="M${points.map(place).join('L')}Z" fill="${fill}" stroke="${fill}"/>`,
   );
   return [
-    `<svg xmlns="http://www.w3.org/2000/svg" width="${width}" height="${height}" viewBox="0 0 ${width} ${height}" role="img" aria-label="${escapeXml(rig.name)}" stroke-width="0.6" stroke-linejoin="round">`,
+    `<svg xmlns="http://www.w3.org/2000/svg" width="${width}" height="${height}" viewBox="0 0 ${width} ${height}" role="img" aria-label="${escapeXml(rig.name)}" stroke-width="1" stroke-linejoin="round">`,
     ...paths,
     '</svg>',
     '',

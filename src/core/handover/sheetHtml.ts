@@ -4,11 +4,14 @@ import { escapeXml as e } from './text';
 
 /** Paper and ink on A4, whatever the screen looks like. Every rule is held inside the sheet. */
 export const SHEET_STYLE = `
+@page { size: A4; margin: 16mm 15mm; @bottom-right { content: counter(page) " of " counter(pages); font: 8pt system-ui, sans-serif; } }
 .calculation-sheet { background: #fff; color: #111; font: 9.5pt/1.35 system-ui, sans-serif; font-variant-numeric: tabular-nums; color-scheme: light; overflow-wrap: anywhere; }
 .calculation-sheet h1 { font-size: 19pt; margin: 0 0 1mm; }
 .calculation-sheet h2 { font-size: 12pt; margin: 6mm 0 1.5mm; border-bottom: 0.4mm solid #111; break-after: avoid; }
 .calculation-sheet p, .calculation-sheet ul { margin: 0 0 1.5mm; }
-.calculation-sheet ul { padding-left: 5mm; }
+.calculation-sheet ul { padding-left: 5mm; list-style: disc; }
+.calculation-sheet li { margin-bottom: 0.8mm; }
+.calculation-sheet h2 + p { break-after: avoid; }
 .calculation-sheet .imprint { color: #333; font-size: 8.5pt; }
 .calculation-sheet .imprint code { font-size: 8pt; }
 .calculation-sheet .cautions { border: 0.6mm solid #111; padding: 2mm 3mm; margin: 4mm 0; break-inside: avoid; }
@@ -63,7 +66,9 @@ function sectionHtml({ title, notes, rows }: SheetSection): string {
 const pictureHtml = (picture: SheetPicture): string => {
   const inside =
     picture.kind === 'svg' ? picture.svg : `<img alt="${e(picture.caption)}" src="${e(picture.address)}">`;
-  return `<figure>${inside}<figcaption>${e(picture.caption)}</figcaption></figure>`;
+  // A plot has its title inside it.
+  const words = picture.caption ? `<figcaption>${e(picture.caption)}</figcaption>` : '';
+  return `<figure>${inside}${words}</figure>`;
 };
 
 /** The sheet's own element, for a page that has SHEET_STYLE already. Everything from the rig is escaped. */
@@ -101,7 +106,7 @@ export const writeSheetHtml = (sheet: CalculationSheet, pictures: readonly Sheet
 <meta charset="utf-8">
 <meta name="viewport" content="width=device-width, initial-scale=1">
 <title>${e(sheet.title)}: calculation sheet</title>
-<style>@page { size: A4; margin: 16mm 15mm; } body { margin: 0 auto; max-width: 180mm; }${SHEET_STYLE}</style>
+<style>body { margin: 0 auto; max-width: 180mm; }${SHEET_STYLE}</style>
 </head>
 <body>
 ${sheetBody(sheet, pictures)}

@@ -1,14 +1,7 @@
-import { mkdirSync, readFileSync, writeFileSync } from 'node:fs';
+import { mkdirSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
-import { makeHandover, sha256 } from '../../core/handover';
+import { makeHandover, PROGRAM, sha256 } from '../../core/handover';
 import type { Command } from '../command';
-
-const program = (): string => {
-  const { version } = JSON.parse(
-    readFileSync(join(import.meta.dirname, '../../../package.json'), 'utf8'),
-  ) as { version: string };
-  return `Tiltwright ${version}`;
-};
 
 export const handoverCommand: Command = {
   name: 'handover',
@@ -29,7 +22,7 @@ export const handoverCommand: Command = {
     const date = options.text('date');
     if (!/^\d{4}-\d{2}-\d{2}$/.test(date))
       return { kind: 'refused', sentences: [`--date: "${date}" is not a date such as 2026-03-01.`] };
-    const outcome = makeHandover(rig, { program: program(), date }, () => performance.now() / 1000);
+    const outcome = makeHandover(rig, { program: PROGRAM, date }, () => performance.now() / 1000);
     if (outcome.kind === 'refused')
       return { kind: 'refused', sentences: outcome.refusals.map(({ sentence }) => sentence) };
     const { files, noPlan } = outcome.handover;
