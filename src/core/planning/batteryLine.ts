@@ -9,36 +9,62 @@ import {
   standGyro,
   USUAL_USABLE_CHARGE,
 } from '../physics';
+import type { Servo } from '../rig';
 import type { ArrayAxis } from './arrayAxes';
 import type { LedgerLine } from './ledger';
 import { input, lineOf } from './ledgerLine';
 import type { AxisSchedule } from './momentumPlanCheck';
 import type { PlanSetting } from './rigPlan';
+import { steeredServoTorque } from './steeredLines';
+import type { SteeredCourse } from './steeredPlan';
 
 /** Pieces of the spin-up integral: its energy is within 1e-4 of that of many (measured 4e-7). */
 const PANELS = 12;
 
+/** Mean of a servo's electrical power over the instants of a plan, W. Column `at` of each row of `width`. */
+function meanServoPower(
+  { stallTorque, noLoadSpeed }: Servo,
+  torque: Float64Array,
+  rate: Float64Array,
+  width = 1,
+  at = 0,
+): number {
+  let sum = 0;
+  let count = 0;
+  for (let k = at; k < torque.length; k += width) {
+    sum += servoPower(stallTorque, noLoadSpeed, torque[k] as number, rate[k] as number);
+    count += 1;
+  }
+  return count > 0 ? sum / count : 0;
+}
+
 /**
  * Mean electrical power of all gimbal servos over a plan, W: each servo's holding heat and work, never given back.
  *
- * O(instants x axes). Source: linear servo model.
+ * @param steering  of a steered array; undefined where each axis has gimbals of its own
+ *
+ * O(instants x servos). Source: linear servo model.
  */
-export function meanGimbalPower(setting: PlanSetting, schedules: readonly AxisSchedule[]): number {
-  let total = 0;
-  schedules.forEach((schedule, a) => {
+export function meanGimbalPower(
+  setting: PlanSetting,
+  schedules: readonly AxisSchedule[],
+  steering?: SteeredCourse,
+): number {
+  const { steered } = setting;
+  if (steered && steering) {
+    const torque = steeredServoTorque(setting, steered, steering, schedules);
+    return steered.servos.reduce(
+      (sum, servo, at) => sum + meanServoPower(servo, torque, steering.tiltRate, steering.servos, at),
+      0,
+    );
+  }
+  return schedules.reduce((sum, schedule, a) => {
     const { servo, followers } = setting.axes[a] as ArrayAxis;
-    if (!servo) return;
-    const servos = followers.filter(
-      ({ gyro }) => setting.compiled.rig.array.gyros[gyro]?.drive.kind === 'servo',
-    ).length;
-    let sum = 0;
-    for (let k = 0; k < schedule.servoTorque.length; k++) {
-      const torque = schedule.servoTorque[k] as number;
-      sum += servoPower(servo.stallTorque, servo.noLoadSpeed, torque, schedule.tiltRate[k] as number);
-    }
-    total += (servos * sum) / Math.max(1, schedule.servoTorque.length);
-  });
-  return total;
+    if (!servo) return sum;
+    const { gyros } = setting.compiled.rig.array;
+    const servos = followers.filter(({ gyro }) => gyros[gyro]?.drive.kind === 'servo').length;
+    return sum + servos * meanServoPower(servo, schedule.servoTorque, schedule.tiltRate);
+  }, 0);
 }
 
 interface WheelBudget {
@@ -84,7 +110,11 @@ function budgetOf(standing: SpinStanding): WheelBudget {
  *
  * About 0.5 ms for each gyro that is unlike the others. Sources: with DRIVE_FORMULAS.
  */
-export function batteryLine(setting: PlanSetting, schedules: readonly AxisSchedule[]): readonly LedgerLine[] {
+export function batteryLine(
+  setting: PlanSetting,
+  schedules: readonly AxisSchedule[],
+  steering?: SteeredCourse,
+): readonly LedgerLine[] {
   const { rig } = setting.compiled;
   const budgets = wheelBudgets(setting);
   if (budgets.length === 0) return [];
@@ -100,7 +130,7 @@ export function batteryLine(setting: PlanSetting, schedules: readonly AxisSchedu
   const full = packEnergy(cells, cellVoltage, capacity);
   const hold = budgets.reduce((sum, budget) => sum + budget.hold, 0);
   const up = budgets.reduce((sum, budget) => sum + budget.spinUp, 0);
-  const gimbals = meanGimbalPower(setting, schedules);
+  const gimbals = meanGimbalPower(setting, schedules, steering);
   const { duration } = rig.jobs;
   return [
     lineOf({

@@ -30,6 +30,6 @@ export function ledgerLines(setting: PlanSetting, schedules: readonly AxisSchedu
     ...leanLines(setting, schedules),
     ...(schedules.length > 0 ? leakLine(setting, tilt, tiltRate) : []),
     ...wheelLines(setting.compiled, greatestRate),
-    ...batteryLine(setting, schedules),
+    ...batteryLine(setting, schedules, steering),
   ];
 }

@@ -1,9 +1,10 @@
 import { describe, expect, it } from 'vitest';
 import { compileRig, spinRig } from '../../../src/core/physics';
+import { ledgerLines, setUpPlan, steeringOf } from '../../../src/core/planning';
 import { batteryLine, meanGimbalPower } from '../../../src/core/planning/batteryLine';
-import { setUpPlan } from '../../../src/core/planning/rigPlan';
-import { DEMONSTRATIONS, type Gyro, type Rig, STRIDER } from '../../../src/core/rig';
+import { DEMONSTRATIONS, type Gyro, PACER, type Rig, STRIDER } from '../../../src/core/rig';
 import { expectClose } from '../../support/closeTo';
+import { heldPlanOf, withLayout } from '../../support/plannedRigs';
 
 function settingOf(rig: Rig) {
   const compiled = compileRig(rig);
@@ -43,6 +44,19 @@ describe("the battery's line", () => {
     const coasting = batteryLine(settingOf(withGyros(() => ({ spin: { kind: 'coasting' } }))), []);
     const hold = coasting[0]!.ask.inputs.find(({ label }) => label === 'Power to hold all wheels');
     expect(hold?.value).toBe(0);
+  });
+
+  it('of a steered pyramid counts the power of every servo', () => {
+    const planned = heldPlanOf(withLayout(PACER, 'pyramid'));
+    expect(planned.setting.steered?.count).toBe(4);
+    const steering = steeringOf(planned.setting, planned.schedules);
+    const power = meanGimbalPower(planned.setting, planned.schedules, steering);
+    expect(power).toBeGreaterThan(0);
+    const lines = ledgerLines(planned.setting, planned.schedules);
+    const told = lines
+      .find(({ name }) => name === 'battery')
+      ?.ask.inputs.find(({ label }) => label === 'Mean power of the gimbal drives');
+    expect(told?.value).toBe(power);
   });
 
   it('is not there without wheels', () => {
