@@ -1,24 +1,44 @@
+import { useMemo } from 'react';
+import { type CompiledRig, fallModeFigures } from '../../../core/physics';
 import { formatNumber } from '../../../core/units';
-import { FigureRow } from '../../sheet/FigureRow';
 import { Group } from '../../sheet/Group';
 import { Refusals } from '../../sheet/Refusals';
 import { useShown } from '../../state/reading';
+import { AfloatFields } from './AfloatFields';
+import { FigureRows } from './FigureRows';
+import { TrimFields } from './TrimFields';
+import { useCompiled } from './useCompiled';
+import './weigh.css';
+
+/** Told with the rest of the flotation where the rig floats. */
+const AFLOAT = ['draught', 'metacentricHeight'];
 
 /** What it weighs, where its centre is, how it falls: each number opens to its formula, inputs and source. */
 export function WeighSheet() {
   const shown = useShown();
+  const compiled = useCompiled();
   return (
     <>
       <Refusals />
       {shown && (
         <Group title="Whole rig">
-          {shown.weigh.map((figure) => (
-            <FigureRow key={figure.id} figure={figure} />
-          ))}
+          <FigureRows figures={shown.weigh.filter(({ id }) => !AFLOAT.includes(id))} />
         </Group>
       )}
+      {compiled && <FallFigures compiled={compiled} />}
+      {compiled && <TrimFields compiled={compiled} />}
+      {compiled && <AfloatFields compiled={compiled} />}
       {shown && <InertiaTable inertia={shown.inertia} />}
     </>
+  );
+}
+
+function FallFigures({ compiled }: { readonly compiled: CompiledRig }) {
+  const figures = useMemo(() => fallModeFigures(compiled), [compiled]);
+  return (
+    <Group title="By itself, array still">
+      <FigureRows figures={figures} />
+    </Group>
   );
 }
 
