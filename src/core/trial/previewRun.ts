@@ -1,22 +1,15 @@
 /** What one run holds, and how its gimbals are moved and read. */
 import {
-  type Controller,
-  createServoWork,
-  mountServo,
   readCommand,
   resetServo,
   SERVO_INPUT,
   SERVO_STATE,
   SERVO_TARGET,
-  type ServoModel,
-  type ServoWork,
   sendCommand,
   stepServo,
 } from '../control';
 import {
   arrayTorque,
-  type CompiledRig,
-  compileStar,
   createRk4Work,
   createStarWork,
   type Derivative,
@@ -27,31 +20,25 @@ import {
   type StarWork,
   starDerivative,
 } from '../physics';
-import {
-  type AxisSchedule,
-  type GimbalGroup,
-  gimbalGroups,
-  type PlanSetting,
-  pivotHeight,
-  rollLeftOver,
-} from '../planning';
-import type { Gyro } from '../rig';
-import { type Build, builtCarrier, builtFall, builtServo } from './build';
+import { type AxisSchedule, type PlanSetting, rollLeftOver } from '../planning';
+import { type Build, builtFall } from './build';
 import type { Switches } from './evaluation';
 import { type FirmOutside, firmOutside } from './firmOutside';
 import { MOVING_BASE, movingBaseCourse } from './movingBase';
 import { PlanPlace } from './planPlace';
 import { type PreviewLaw, previewLaw } from './previewLaw';
+import {
+  type Actuator,
+  listJumps,
+  type MotorLine,
+  mountActuators,
+  mountMotorLine,
+  type RunChoice,
+  type RunJump,
+  rollStar,
+} from './runMount';
 import { createRunSteering, type RunSteering } from './runSteering';
 import type { Sense } from './sensing';
-
-interface Actuator {
-  readonly group: GimbalGroup;
-  /** Sign with which the group's leader follows the planned tilt; 0 for a group that does not work in roll. */
-  readonly sign: number;
-  readonly servo: ServoModel;
-  readonly work: ServoWork;
-}
 
 /** Everything one run holds. */
 export interface PreviewRun {
@@ -69,7 +56,7 @@ export interface PreviewRun {
   /** How servos share the law's command; undefined where each follows it with its sign. */
   readonly steering: RunSteering | undefined;
   /** Carries the torque of reaction wheels through the delay of the loop. */
-  readonly motorLine: { readonly servo: ServoModel; readonly work: ServoWork };
+  readonly motorLine: MotorLine;
   /** Signs of reaction wheels along the roll axis; 0 for any other gyro. */
   readonly motorSigns: Float64Array;
   /** n, N*m*s: each wheel's momentum as it turns. */
@@ -89,7 +76,7 @@ export interface PreviewRun {
   /** Disturbances on feet, which the plan of a gait does not know; undefined for a body that leans. */
   readonly outside: FirmOutside | undefined;
   /** What hits the body at once, in order of time: N*m*s about the line it leans about. */
-  readonly jumps: readonly { readonly time: number; readonly roll: number }[];
+  readonly jumps: readonly RunJump[];
   readonly tilt: Float64Array;
   readonly rate: Float64Array;
   /** 3, N*m, body frame: now, and the mean since the last sample (servos move in frames, so one instant misleads). */
@@ -102,27 +89,6 @@ export interface PreviewRun {
 }
 
 const noRate = new Float64Array(3);
-
-/** How a run differs from a preview. */
-export interface RunChoice {
-  readonly build: Build;
-  readonly sense: Sense;
-  /** For gains that the rig leaves to be computed. */
-  readonly controller?: Controller | undefined;
-  /** Shoves that no plan knows of. */
-  readonly surprises?: readonly Surprise[];
-  /** s */
-  readonly length: number;
-  /** Hz at which commands are sent. */
-  readonly commandRate: number;
-}
-
-/** A shove out of the blue: N*s to the left, m above the ground. */
-export interface Surprise {
-  readonly time: number;
-  readonly impulse: number;
-  readonly height: number;
-}
 
 /** Makes a run ready at time 0, gimbals where the law has them. */
 export function prepareRun(
@@ -192,92 +158,6 @@ export function prepareRun(
   findTorque(run);
   run.meanTorque.set(run.torque);
   return run;
-}
-
-/** The star as built. Roll alone is run: feet tip, and a point pivots, about a line that runs forward. */
-function rollStar(compiled: CompiledRig, build: Build, isLocked: boolean): StarModel {
-  const { footing } = compiled.rig;
-  const isTurned = footing.kind === 'firm' || footing.kind === 'point';
-  const isDrawn = build.mass === 1 && build.centreUp === 0;
-  const mustLock = isLocked && compiled.star.gyros.some(({ drive }) => drive.kind === 'free');
-  if (!isTurned && isDrawn && !mustLock) return compiled.model;
-  return compileStar({
-    ...compiled.star,
-    gyros: mustLock
-      ? compiled.star.gyros.map((gyro) => ({ ...gyro, drive: { kind: 'locked' } as const }))
-      : compiled.star.gyros,
-    base: isDrawn ? compiled.star.base : builtCarrier(compiled, build),
-    footing: isTurned
-      ? {
-          kind: 'edge',
-          point: footing.kind === 'point' ? footing.position : [0, 0, 0],
-          axis: [1, 0, 0],
-        }
-      : compiled.star.footing,
-  });
-}
-
-function mountActuators(
-  setting: PlanSetting,
-  model: StarModel,
-  law: PreviewLaw,
-  { build, commandRate }: RunChoice,
-  signOf: (gyro: number) => number,
-): readonly Actuator[] {
-  const { compiled } = setting;
-  const { gyros } = compiled.rig.array;
-  const { loopDelay, loopJitter } = compiled.rig.sensing;
-  return gimbalGroups(compiled).map((group): Actuator => {
-    const { min, max } = gyros[group.leader]?.tilt ?? { min: 0, max: 0 };
-    const inertia = group.members.reduce((sum, { index }) => sum + model.hingeInertia[index], 0);
-    const gimbals = group.members.map(({ index }) => (gyros[index] as Gyro).gimbal);
-    const servo = mountServo(builtServo(group.servo, gimbals, build), {
-      gimbalInertia: inertia,
-      tiltMin: min,
-      tiltMax: max,
-    });
-    const work = createServoWork(servo, commandRate, loopDelay + loopJitter);
-    const sign = signOf(group.leader);
-    resetServo(work, sign * law.startTilt);
-    return { group, sign, servo, work };
-  });
-}
-
-/** The way from loop to motors, used for its delay alone. */
-function mountMotorLine({ rig }: CompiledRig, commandRate: number): PreviewRun['motorLine'] {
-  const servo: ServoModel = {
-    stallTorque: 1,
-    noLoadSpeed: 1,
-    torqueLimit: 1,
-    delay: 0,
-    lag: 0,
-    backlash: 0,
-    deadBand: 0,
-    resolution: 0,
-    updateRate: 0,
-    gimbalInertia: 1,
-    rotorInertia: 0,
-    tiltMin: 0,
-    tiltMax: 0,
-  };
-  const { loopDelay, loopJitter } = rig.sensing;
-  return { servo, work: createServoWork(servo, commandRate, loopDelay + loopJitter) };
-}
-
-function listJumps(
-  setting: PlanSetting,
-  outside: FirmOutside | undefined,
-  { build, surprises = [] }: RunChoice,
-): PreviewRun['jumps'] {
-  const known = outside ? outside.jumps : setting.disturbances.jumps;
-  const height = pivotHeight(setting.compiled);
-  return [
-    ...known.map(({ time, roll }) => ({ time, roll: roll * build.shove })),
-    ...surprises.map((shove) => ({
-      time: shove.time,
-      roll: -(shove.height - height) * shove.impulse * build.shove,
-    })),
-  ].sort((a, b) => a.time - b.time);
 }
 
 /** Puts servos that share a command where the law begins. */

@@ -16,10 +16,11 @@ import { AS_DRAWN, type Build } from './build';
 import type { Switches } from './evaluation';
 import type { Motion } from './motion';
 import { createMotion } from './motionRecorder';
-import { type PreviewRun, prepareRun, type Surprise } from './previewRun';
+import { type PreviewRun, prepareRun } from './previewRun';
 import { advanceRun, GONE, LOST, tickRun } from './previewStep';
 import { recordSample } from './recordSample';
 import type { KernelRun } from './rollLoop';
+import type { Surprise } from './runMount';
 import { perfectSense, realSense } from './sensing';
 
 /** s, longest step of the body. */
@@ -281,42 +282,4 @@ export const kernelFigures = ({ model }: KernelRun, outcome: RollOutcome, length
 function storedIn(gimbals: readonly ServoGimbal[], tilt: number): number {
   const lead = gimbals[0]?.follow ?? 1;
   return gimbals.reduce((sum, g) => sum + g.momentum * Math.sin(g.follow * lead * tilt), 0);
-}
-
-/** A record as CSV: one row a sample, names with units in the first. */
-export function writeTrialCsv({ motion, columns }: TrialRun): string {
-  const { samples, gyros } = motion;
-  const names = Array.from({ length: gyros }, (_, i) => `tilt ${i + 1} (rad)`);
-  const rates = Array.from({ length: gyros }, (_, i) => `tilt rate ${i + 1} (rad/s)`);
-  const head = [
-    'time (s)',
-    'lean (rad)',
-    'lean rate (rad/s)',
-    'lean estimate (rad)',
-    'lean rate estimate (rad/s)',
-    'command',
-    'servo torque (N m)',
-    'array roll torque (N m)',
-    'array roll momentum (N m s)',
-    'array yaw momentum (N m s)',
-    ...names,
-    ...rates,
-  ];
-  const rows = Array.from({ length: samples }, (_, k) =>
-    [
-      motion.time[k],
-      columns.lean[k],
-      columns.leanRate[k],
-      columns.leanEstimate[k],
-      columns.rateEstimate[k],
-      columns.command[k],
-      columns.servoTorque[k],
-      motion.torque[3 * k],
-      motion.momentum[3 * k],
-      motion.momentum[3 * k + 2],
-      ...motion.tilt.subarray(k * gyros, (k + 1) * gyros),
-      ...motion.tiltRate.subarray(k * gyros, (k + 1) * gyros),
-    ].join(','),
-  );
-  return `${[head.join(','), ...rows].join('\r\n')}\r\n`;
 }

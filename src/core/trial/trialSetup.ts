@@ -3,10 +3,10 @@ import type { Controller } from '../control';
 import { compileRig } from '../physics';
 import {
   type AxisSchedule,
+  attemptRigPlan,
   createPlanWork,
   defaultPlanOptions,
   type PlanSetting,
-  planRig,
   setUpPlan,
 } from '../planning';
 import type { Refusal, Rig } from '../rig';
@@ -31,7 +31,7 @@ export function setUpTrial(rig: Rig): TrialSetupOutcome {
   if (compiled.kind === 'refused') return compiled;
   const set = setUpPlan(compiled.compiled);
   if (set.kind === 'refused') return set;
-  const plan = planRig(set.setting, defaultPlanOptions, createPlanWork());
+  const plan = attemptRigPlan(set.setting, defaultPlanOptions, createPlanWork());
   const isPlanned = plan.kind === 'planned';
   const setting = isPlanned ? plan.setting : set.setting;
   const gains = computeGains(setting);
