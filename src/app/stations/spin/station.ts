@@ -1,5 +1,5 @@
+import { lazySheet } from '../lazySheet';
 import type { Station } from '../station';
-import { SpinSheet } from './SpinSheet';
 import { useSpinChoices } from './spinChoices';
 import { spinMark } from './spinMark';
 
@@ -9,5 +9,5 @@ export const SPIN: Station = {
   question: 'Can the wheel be spun, safely, on this motor and battery?',
   mark: (_, rig) => spinMark(rig),
   onMark: (listener) => useSpinChoices.subscribe(listener),
-  Sheet: SpinSheet,
+  Sheet: lazySheet(async () => (await import('./SpinSheet')).SpinSheet),
 };
