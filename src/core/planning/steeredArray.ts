@@ -179,6 +179,7 @@ export const singularityShare = (array: SteeredArray, work: SteeringWork, tilt: 
  *
  * @param wanted  3, N*m*s, change from the momentum at rest
  * @param tilt    count, rad: where to start, and the answer
+ * @param passes  most of them; a loop that goes on from its last tilts needs one or two
  * @returns       what of the momentum is still missing, N*m*s; more than nothing where there is no such tilt near
  *
  * O(steps x servos). Source: Wie, JGCD 27(2) 2004; damping as Nakamura and Hanafusa, ASME JDSMC 108 (1986).
@@ -188,11 +189,12 @@ export function steerTo(
   work: SteeringWork,
   wanted: Float64Array,
   tilt: Float64Array,
+  passes = STEPS,
 ): number {
   const { momentum, aim, step, jacobian, square, inverse } = work;
   const { count, restMomentum, restMeasure, meanSquare } = array;
   let missing = Number.POSITIVE_INFINITY;
-  for (let pass = 0; pass < STEPS; pass++) {
+  for (let pass = 0; pass < passes; pass++) {
     fillMomentum(array, tilt, momentum);
     const det = measureAt(array, work, tilt);
     const share = restMeasure > 0 ? Math.sqrt(det / restMeasure) : 0;

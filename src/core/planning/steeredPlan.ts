@@ -41,6 +41,20 @@ export type SteerOutcome =
 const momentumAt = (schedule: AxisSchedule, k: number, share: number): number =>
   schedule.momentum[k] + share * (schedule.momentum[k + 1] - schedule.momentum[k]);
 
+/** Steerings by the schedules they follow: plan, ledger, ribbon and preview all ask for the same one. */
+const known = new WeakMap<readonly AxisSchedule[], SteerOutcome>();
+
+/** The steering of a plan, worked out once for its schedules; see `steerAfresh`. */
+export function steerPlan(
+  setting: PlanSetting,
+  array: SteeredArray,
+  schedules: readonly AxisSchedule[],
+): SteerOutcome {
+  const found = known.get(schedules) ?? steerAfresh(setting, array, schedules);
+  known.set(schedules, found);
+  return found;
+}
+
 /**
  * Steers an array through planned axes: roll and pitch as planned, yaw at nothing.
  *
@@ -48,7 +62,7 @@ const momentumAt = (schedule: AxisSchedule, k: number, share: number): number =>
  *
  * O(instants x STEERING_REFINE x servos).
  */
-export function steerPlan(
+function steerAfresh(
   setting: PlanSetting,
   array: SteeredArray,
   schedules: readonly AxisSchedule[],

@@ -37,6 +37,9 @@ export function createRunSteering(
   return { planned, tiltsFor: followBoth(setting, pitch?.tilt) };
 }
 
+/** Passes of the steering law at each tick of the loop, from the tilts of the tick before. */
+const PASSES = 2;
+
 function steerBy(
   array: SteeredArray,
   momentum: number,
@@ -45,10 +48,13 @@ function steerBy(
   const work = createSteeringWork(array);
   const wanted = new Float64Array(3);
   const tilt = new Float64Array(array.count);
+  let isUnderWay = false;
   return (command, place) => {
     wanted[0] = momentum * Math.sin(command);
     wanted[1] = pitch ? place.valueOf(pitch) : 0;
-    steerTo(array, work, wanted, tilt);
+    if (isUnderWay) steerTo(array, work, wanted, tilt, PASSES);
+    else steerTo(array, work, wanted, tilt);
+    isUnderWay = true;
     for (let i = 0; i < array.count; i++) {
       tilt[i] = Math.min(array.tiltMax[i], Math.max(array.tiltMin[i], tilt[i]));
     }
