@@ -35,6 +35,9 @@ function gridGeometry(step: number, line: Color, page: Color) {
 
 const AXIS_NAMES = ['x', 'y'] as const;
 
+/** Share of a cell within which a name would lie on a mark. */
+const ROOM = 0.9;
+
 /** The ground on land: a quiet grid that goes along with the body by whole cells. */
 export function Ground() {
   const { frame, palette, size } = useStage();
@@ -61,13 +64,38 @@ export function Ground() {
         <lineBasicMaterial color={palette.soft} depthWrite={false} />
       </lineSegments>
       {AXIS_NAMES.map((name, i) => (
-        <Label
+        <AxisName
           key={name}
           text={name === 'x' ? `x  ${words}` : 'y'}
           at={i === 0 ? [1.06 * step, 0, 0] : [0, 1.08 * step, 0]}
+          room={ROOM * step}
         />
       ))}
     </>
+  );
+}
+
+interface AxisNameProps {
+  readonly text: string;
+  readonly at: readonly [number, number, number];
+  /** m. */
+  readonly room: number;
+}
+
+/** The name of an axis on the ground; gives way to the marks of the balance while they are near. */
+function AxisName({ text, at, room }: AxisNameProps) {
+  const { frame } = useStage();
+  const group = useRef<Group>(null);
+  useFrame(() => {
+    if (!group.current) return;
+    const { centreOfPressure, centreOfMass } = frame.instant;
+    const isNear = (mark: ArrayLike<number>): boolean => Math.hypot(mark[0] - at[0], mark[1] - at[1]) < room;
+    group.current.visible = !isNear(centreOfPressure) && !isNear(centreOfMass);
+  });
+  return (
+    <group ref={group}>
+      <Label text={text} at={at} />
+    </group>
   );
 }
 

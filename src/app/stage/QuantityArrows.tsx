@@ -23,7 +23,7 @@ import { LONGEST_ARC, useStage } from './stageFrame';
 const SHORTEST_SHARE = 0.004;
 
 /** Middle of the array, and how far its wheels reach from it, m, body frame. */
-function useArrayPlace(): { middle: Point; reach: number } {
+export function useArrayPlace(): { middle: Point; reach: number } {
   const { rig, size } = useStage();
   return useMemo(() => {
     const { gyros } = rig.array;
@@ -148,7 +148,7 @@ function arcAttitude(axis: Vector3, out: Quaternion): void {
 }
 
 /** An arc about a turning vector, as long as the vector is great, the way it turns. */
-function TurnArc({ geometry, radius, colour, head, read }: ArcProps) {
+export function TurnArc({ geometry, radius, colour, head, read }: ArcProps) {
   const { scales, size } = useStage();
   const group = useRef<Group>(null);
   const tip = useRef<Group>(null);
@@ -192,7 +192,7 @@ function TurnArc({ geometry, radius, colour, head, read }: ArcProps) {
 }
 
 /** The geometry of an arc is let go of with the arc. */
-const useArc = (make: () => ArcTube, inputs: readonly unknown[]): ArcTube =>
+export const useArc = (make: () => ArcTube, inputs: readonly unknown[]): ArcTube =>
   useGeometry(() => {
     const arc = make();
     return { ...arc, dispose: () => arc.geometry.dispose() };

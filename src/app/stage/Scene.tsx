@@ -12,6 +12,7 @@ import { Gyros } from './GyroModel';
 import { Handles } from './Handles';
 import { HullModel } from './HullModel';
 import { InlineModel } from './InlineModel';
+import { LayoutMarks } from './LayoutMarks';
 import { LeggedTrunk, Legs } from './LeggedModel';
 import { Mounts } from './Mounts';
 import { Payloads } from './Payloads';
@@ -111,6 +112,7 @@ function RigModel() {
         </group>
       </Pushable>
       <QuantityArrows />
+      <LayoutMarks />
       {!isInYard && <Handles />}
     </group>
   );

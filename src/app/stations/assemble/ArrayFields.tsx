@@ -14,6 +14,7 @@ import { Group } from '../../sheet/Group';
 import { useDocument } from '../../state/document';
 import { useSession } from '../../state/session';
 import { moveArray, placeOfArray, spreadArray } from './arrayPlace';
+import { LayoutCheckFold } from './LayoutCheckFold';
 import { LayoutPicture } from './LayoutPicture';
 
 const USUAL_SPACING = 0.13;
@@ -67,6 +68,7 @@ export function ArrayFields() {
             </button>
           ))}
         </div>
+        {place && <LayoutCheckFold />}
       </Group>
       {place && (
         <Group title="Place of the array">
