@@ -26,6 +26,10 @@ export const SHEET_STYLE = `
 .calculation-sheet .grounds td { font-size: 8pt; color: #333; padding-top: 0; }
 .calculation-sheet .formula { font-family: ui-serif, serif; font-size: 9pt; color: #111; }
 .calculation-sheet .fails { font-weight: 700; text-decoration: underline double; }
+.calculation-sheet .entries { columns: 2; column-gap: 7mm; margin: 0; font-size: 8.5pt; }
+.calculation-sheet .entries div { display: flex; justify-content: space-between; gap: 3mm; break-inside: avoid; border-bottom: 0.1mm solid #bbb; padding: 0.4mm 0; }
+.calculation-sheet .entries dd { margin: 0; text-align: right; }
+.calculation-sheet .entries small { display: block; font-size: 6.5pt; color: #555; }
 .calculation-sheet figure { margin: 3mm 0; break-inside: avoid; }
 .calculation-sheet figure svg, .calculation-sheet figure img { display: block; width: 100%; height: auto; max-height: 95mm; object-fit: contain; }
 .calculation-sheet figcaption { font-size: 8pt; color: #333; }
@@ -55,7 +59,18 @@ function rowBody(row: SheetRow): string {
   return `<tbody><tr><th scope="row">${e(row.label)}${note}</th><td>${e(row.result)}</td><td>${e(row.limit ?? '')}</td><td>${spare}</td></tr>${row.grounds.map(groundsLine).join('')}</tbody>`;
 }
 
-function sectionHtml({ title, notes, rows }: SheetSection): string {
+/** In two columns, each with the field's name in the file below its label. */
+function plainHtml({ title, rows }: SheetSection): string {
+  const entries = rows.map(({ label, result, note }) => {
+    const path = note ? `<small>${e(note)}</small>` : '';
+    return `<div><dt>${e(label)}${path}</dt><dd>${e(result)}</dd></div>`;
+  });
+  return `<section><h2>${e(title)}</h2><dl class="entries">${entries.join('')}</dl></section>`;
+}
+
+function sectionHtml(section: SheetSection): string {
+  if (section.isPlain) return plainHtml(section);
+  const { title, notes, rows } = section;
   const table =
     rows.length === 0
       ? ''

@@ -30,6 +30,8 @@ export interface SheetSection {
   readonly title: string;
   readonly notes: readonly string[];
   readonly rows: readonly SheetRow[];
+  /** True for rows that are a label and a value and nothing else. */
+  readonly isPlain?: boolean;
 }
 
 const DIGITS = 4;
@@ -207,8 +209,8 @@ export function entrySection(rig: Rig): SheetSection {
     const schema = schemaAt(RigSchema, steps);
     const info = schema && typeof value === 'number' ? quantityInfo(schema) : undefined;
     const result = info ? sheetQuantity(value as number, info.dimension) : String(value);
-    rows.push({ label: info ? `${info.label} (${path})` : path, result, grounds: [] });
+    rows.push({ label: info?.label ?? path, result, ...(info ? { note: path } : {}), grounds: [] });
   };
   walk(rig, [], '');
-  return { title: 'The rig as entered', notes: [], rows };
+  return { title: 'The rig as entered', notes: [], rows, isPlain: true };
 }

@@ -6,13 +6,14 @@ const NUMBER = 18;
 
 function rowLines(row: SheetRow): readonly string[] {
   const spare = row.spare === undefined ? '' : `${row.spare}${row.isFailing ? ' FAILS' : ''}`;
-  const head = `${row.label.padEnd(LABEL)} ${row.result.padEnd(NUMBER)} ${(row.limit ?? '').padEnd(NUMBER)} ${spare}`;
+  const label = row.grounds.length === 0 && row.note ? `${row.label} (${row.note})` : row.label;
+  const head = `${label.padEnd(LABEL)} ${row.result.padEnd(NUMBER)} ${(row.limit ?? '').padEnd(NUMBER)} ${spare}`;
   const grounds = row.grounds.flatMap(({ of, formula, inputs, source }) => [
     `    ${of ? `${of}: ` : ''}${formula}`,
     ...(inputs.length > 0 ? [`      inputs: ${inputs.join('; ')}`] : []),
     `      source: ${source}`,
   ]);
-  return [head.trimEnd(), ...(row.note ? [`    ${row.note}`] : []), ...grounds];
+  return [head.trimEnd(), ...(row.note && row.grounds.length > 0 ? [`    ${row.note}`] : []), ...grounds];
 }
 
 /** The sheet as plain text, one row a line, its grounds set in below. */
