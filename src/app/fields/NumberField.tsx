@@ -10,6 +10,8 @@ export interface NumberFieldProps {
   /** SI. */
   readonly value: number;
   readonly label?: string | undefined;
+  /** Unit to show it in, in place of the one chosen for its dimension: grams for a balancing weight. */
+  readonly symbol?: string | undefined;
   readonly isReadOnly?: boolean | undefined;
   readonly onChange: (si: number) => void;
   /** A drag begins and ends: everything between is one step to undo. */
@@ -104,7 +106,8 @@ export function NumberField(props: NumberFieldProps) {
 /** The number behind a field: what is shown, what is being typed, and every way of changing it. */
 function useNumber(props: NumberFieldProps, label: string) {
   const { info, value, onChange } = props;
-  const chosen = useSession((session) => session.units[info.dimension]);
+  const preferred = useSession((session) => session.units[info.dimension]);
+  const chosen = props.symbol ?? preferred;
   const input = useRef<HTMLInputElement>(null);
   const [typed, setTyped] = useState<string>();
   const [fault, setFault] = useState<string>();

@@ -85,6 +85,7 @@ function InfluenceFields({ form }: { readonly form: BalanceForm }) {
           <Group key={p} title={planes === 1 ? 'With a trial weight' : `Weight in plane ${p + 1}`}>
             <BenchNumber
               info={BALANCE_INFO.weight}
+              symbol="g"
               value={trial.weight.mass}
               onChange={(mass) => set({ weight: { ...trial.weight, mass } })}
             />
@@ -123,6 +124,7 @@ function FourRunFields({ form }: { readonly form: BalanceForm }) {
       />
       <BenchNumber
         info={BALANCE_INFO.weight}
+        symbol="g"
         value={form.fourMass}
         onChange={(fourMass) => form.set({ fourMass })}
       />
@@ -189,6 +191,7 @@ function WheelFields({ form, usual }: WheelFieldsProps) {
             <BenchNumber
               key={name}
               info={BALANCE_INFO[name]}
+              symbol={BALANCE_INFO[name].dimension === 'mass' ? 'g' : undefined}
               value={form[name]}
               onChange={(value) => form.set({ [name]: value })}
             />

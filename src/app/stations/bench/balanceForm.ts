@@ -79,7 +79,7 @@ const info = (
 export const BALANCE_INFO = {
   amplitude: info('Amplitude', 'ratio', 0, 1e6),
   angle: info('Angle', 'angle', -TURN, TURN),
-  weight: info('Trial weight', 'mass', 1e-7, 100),
+  weight: info('Trial weight', 'mass', 0, 100),
   weightAngle: info('Trial weight at', 'angle', -TURN, TURN),
   readingError: info('A reading is sure to ±', 'ratio', 0, 1e6),
   radius: info('Weights at radius', 'length', 1e-4, 10),
@@ -87,7 +87,7 @@ export const BALANCE_INFO = {
   speed: info('Wheel speed', 'spinRate', 1, 2e4),
   holes: info('Holes, evenly spaced', 'count', 2, 72),
   firstHole: info('First hole at', 'angle', -TURN, TURN),
-  most: info('Most in one hole', 'mass', 1e-7, 10),
+  most: info('Most in one hole', 'mass', 1e-6, 10),
   step: info('Weights in steps of', 'mass', 0, 1),
 } as const satisfies Record<string, QuantityInfo>;
 

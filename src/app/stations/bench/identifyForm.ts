@@ -40,12 +40,12 @@ const info = (
 
 export const GIVEN_INFO = {
   stiffness: info('Roll stiffness', 'stiffness', 1e-6, 1e9),
-  inertia: info('Roll inertia', 'inertia', 1e-9, 1e9),
+  inertia: info('Roll inertia', 'inertia', 0, 1e9),
   weight: info('Weight', 'force', 1e-3, 1e8),
   mass: info('Hanging mass', 'mass', 1e-4, 1e6),
   radius: info('Threads from the axis', 'length', 1e-3, 50),
   length: info('Length of the threads', 'length', 1e-2, 50),
-  wheelInertia: info('Spin inertia of the wheel', 'inertia', 1e-9, 1e6),
+  wheelInertia: info('Spin inertia of the wheel', 'inertia', 0, 1e6),
   voltage: info('Voltage, where not logged', 'voltage', 1e-2, 1e4),
   currentLimit: info('Current limit', 'current', 1e-3, 1e5),
   delay: info('Servo delay', 'time', 0, 1),
