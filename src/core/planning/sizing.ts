@@ -1,7 +1,8 @@
 /** The smallest wheels that do a rig's jobs with a chosen spare, and the rig with them in it. */
 import { compileRig } from '../physics';
 import type { MaterialName, Rig, WheelPart } from '../rig';
-import { createPlanWork, defaultPlanOptions, type PlanWork } from './momentumPlan';
+import { attemptPlan, createPlanWork, defaultPlanOptions, type PlanWork } from './momentumPlan';
+import { scaleMomentum } from './momentumPlanChanges';
 import { sizeMomentum } from './momentumPlanSizing';
 import { attemptRigPlan } from './planRig';
 import { type PlanSetting, setUpPlan } from './rigPlan';
@@ -86,7 +87,11 @@ export function leastShareOf(
   const setting = withLean(set.setting, lean);
   if (setting.unplanned !== undefined) return { kind: 'none', sentence: setting.unplanned };
   if (setting.steered) return steeredShare(rig, setting, spare, lean, work);
-  const outcome = sizeMomentum(setting.problem, spare, defaultPlanOptions, work);
+  const warm = sizeMomentum(setting.problem, spare, defaultPlanOptions, work);
+  const outcome =
+    warm.kind === 'gave-up'
+      ? sizeMomentum(setting.problem, spare, defaultPlanOptions, createPlanWork())
+      : warm;
   switch (outcome.kind) {
     case 'sized':
       if (outcome.share < NOTHING) {
@@ -97,11 +102,11 @@ export function leastShareOf(
         };
       }
       return { kind: 'least', share: outcome.share, setting };
-    case 'gave-up':
-      return {
-        kind: 'none',
-        sentence: 'The planner could not settle on a least momentum; change a number a little.',
-      };
+    case 'gave-up': {
+      const holds = (share: number): boolean =>
+        attemptPlan(scaleMomentum(setting.problem, share), defaultPlanOptions, work).kind === 'planned';
+      return bisectShare(holds, setting, spare);
+    }
     default:
       return {
         kind: 'none',
@@ -134,6 +139,11 @@ function steeredShare(
       attemptRigPlan(withLean(set.setting, lean), defaultPlanOptions, work).kind === 'planned'
     );
   };
+  return bisectShare(holds, setting, spare);
+}
+
+/** Least share that holds, by halving; for arrays, and the rare problem, that one convex solve does not settle. */
+function bisectShare(holds: (share: number) => boolean, setting: PlanSetting, spare: number): Least {
   let high = 1;
   while (high < 64 && !holds(high)) high *= 2;
   if (high >= 64) {
