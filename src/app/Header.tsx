@@ -5,7 +5,7 @@ import { SettingsDialog } from './sheet/SettingsDialog';
 import { useDocument } from './state/document';
 import { useShown } from './state/reading';
 import { useSession } from './state/session';
-import { findStation, STATION_WORDS, STATIONS, type StationMark } from './stations';
+import { STATIONS, type StationMark } from './stations';
 
 const MARK_WORDS: Readonly<Record<StationMark, string>> = {
   notYet: 'not yet',
@@ -53,14 +53,13 @@ function Stations() {
   }, [station]);
   return (
     <nav className="stations" aria-label="Stations" ref={nav}>
-      {STATION_WORDS.map(({ id, word }) => {
-        const built = findStation(id);
-        const mark = built ? built.mark(shown, rig) : 'notYet';
+      {STATIONS.map((each) => {
+        const { id, word } = each;
+        const mark = each.mark(shown, rig);
         return (
           <button
             key={id}
             type="button"
-            disabled={!built}
             aria-current={id === station ? 'page' : undefined}
             onClick={() => goTo(id)}
           >

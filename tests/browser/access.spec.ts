@@ -1,7 +1,7 @@
 import AxeBuilder from '@axe-core/playwright';
 import { expect, goTo, openApp, openRigs, pause, test } from './page';
 
-const STATIONS = ['Assemble', 'Weigh', 'Plan'] as const;
+const STATIONS = ['Assemble', 'Weigh', 'Spin up', 'Plan', 'Trial', 'Bench', 'Hand over'] as const;
 
 for (const scheme of ['light', 'dark'] as const) {
   test(`nothing bars the way on any station in ${scheme}`, async ({ page }) => {

@@ -11,17 +11,6 @@ import { WEIGH } from './weigh/station';
 
 export const STATIONS: readonly Station[] = [ASSEMBLE, WEIGH, SPIN, PLAN, TRIAL, BENCH, HANDOVER];
 
-/** All seven words in job order; those without a station are not there yet and say so. */
-export const STATION_WORDS: readonly { readonly id: StationId; readonly word: string }[] = [
-  { id: 'assemble', word: 'Assemble' },
-  { id: 'weigh', word: 'Weigh' },
-  { id: 'spin', word: 'Spin up' },
-  { id: 'plan', word: 'Plan' },
-  { id: 'trial', word: 'Trial' },
-  { id: 'bench', word: 'Bench' },
-  { id: 'handover', word: 'Hand over' },
-];
-
 export const findStation = (id: StationId): Station | undefined =>
   STATIONS.find((station) => station.id === id);
 export type { Station, StationMark } from './station';

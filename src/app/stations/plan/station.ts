@@ -8,7 +8,6 @@ export const PLAN: Station = {
   mark: (shown) => {
     if (!shown || shown.plan.kind === 'unplanned') return 'notYet';
     if (shown.plan.kind === 'impossible') return 'fails';
-    if (shown.outcome.kind === 'falls') return 'fails';
     return shown.ledger.lines.some((line) => line.spare < 0) ? 'fails' : 'holds';
   },
   Sheet: lazySheet(async () => (await import('./PlanSheet')).PlanSheet),
