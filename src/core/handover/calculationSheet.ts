@@ -21,6 +21,7 @@ export interface Findings {
   readonly evaluation: Evaluated;
   readonly gains: GainOutcome;
   readonly spin: SpinSheetOutcome;
+  readonly cautions: readonly Caution[];
 }
 
 export interface SheetCaution {
@@ -88,7 +89,7 @@ export function makeSheet(findings: Findings, imprint: Imprint): CalculationShee
     date: imprint.date,
     sha256: hashRig(rig),
     verdicts: verdictsOf(findings),
-    cautions: spin.kind === 'sheet' ? spin.sheet.cautions.map(cautionOf) : [],
+    cautions: findings.cautions.map(cautionOf),
     sections: [
       ledger,
       { title: 'Weight, centre and fall', notes: [], rows: evaluation.weigh.map(figureRow) },

@@ -16,6 +16,7 @@ import { writePlotSvg } from './plotSvg';
 import { modelRig } from './rigModel';
 import { drawRig } from './rigPicture';
 import { writeScheduleCsv } from './scheduleCsv';
+import { sheetCautions } from './sheetCautions';
 import { type SheetPicture, writeSheetHtml } from './sheetHtml';
 import { writeSheetText } from './sheetText';
 import { writeStl } from './stl';
@@ -187,7 +188,11 @@ export function findOut(
   if (set.kind === 'refused') return set;
   const gains: GainOutcome = computeGains(set.setting);
   const spin = spinSheet(rig, gimbalPowerIn(evaluation.ledger));
-  return { kind: 'found', compiled: outcome.compiled, findings: { rig, evaluation, gains, spin } };
+  return {
+    kind: 'found',
+    compiled: outcome.compiled,
+    findings: { rig, evaluation, gains, spin, cautions: sheetCautions(outcome.compiled, spin) },
+  };
 }
 
 /**

@@ -17,6 +17,7 @@ export * from './program';
 export * from './rigModel';
 export * from './rigPicture';
 export * from './scheduleCsv';
+export * from './sheetCautions';
 export * from './sheetHtml';
 export * from './sheetRows';
 export * from './sheetText';

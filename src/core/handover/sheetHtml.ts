@@ -31,9 +31,9 @@ export const SHEET_STYLE = `
 .calculation-sheet .entries dd { margin: 0; text-align: right; }
 .calculation-sheet .entries small { display: block; font-size: 6.5pt; color: #555; }
 .calculation-sheet figure { margin: 3mm 0; break-inside: avoid; }
-.calculation-sheet figure svg, .calculation-sheet figure img { display: block; width: 100%; height: auto; max-height: 95mm; object-fit: contain; }
+.calculation-sheet figure svg, .calculation-sheet figure img { display: block; width: 100%; height: auto; max-height: 88mm; object-fit: contain; }
 .calculation-sheet figcaption { font-size: 8pt; color: #333; }
-.calculation-sheet .signing { display: flex; gap: 8mm; margin-top: 4mm; }
+.calculation-sheet .signing { display: flex; gap: 8mm; margin-top: 4mm; break-inside: avoid; }
 .calculation-sheet .signing span { flex: 1; border-bottom: 0.2mm solid #111; padding-top: 7mm; font-size: 8pt; }
 `;
 

@@ -63,6 +63,28 @@ describe('the calculation sheet', () => {
     }
   });
 
+  it('keeps the cautions of a wheel whose stresses cannot be worked out', () => {
+    const loose = {
+      kind: 'balls',
+      count: 12,
+      diameter: 0.006,
+      pitchRadius: 0.09,
+      material: 'steel 52100',
+      offset: 0,
+    } as const;
+    const gyros = STRIDER.array.gyros.map((gyro) => ({
+      ...gyro,
+      wheel: { ...gyro.wheel, parts: [...gyro.wheel.parts, loose] },
+    }));
+    const { sheet } = handOver({ ...STRIDER, array: { gyros } });
+    expect(sheet.verdicts.some(({ sentence }) => /parts\[\d\]\.pitchRadius/.test(sentence))).toBe(true);
+    expect(sheet.cautions.map(({ sentence }) => sentence)).toEqual(
+      strider.sheet.cautions.map(({ sentence }) => sentence),
+    );
+    const rim = (STRIDER.array.gyros[0]!.speed * 0.093).toPrecision(3);
+    expect(sheet.cautions[0]!.because).toContain(`Rim speed ${rim} m/s`);
+  });
+
   it('has no cautions only where there is nothing to be careful of', () => {
     expect(
       cautionsFor({
