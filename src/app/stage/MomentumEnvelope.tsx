@@ -17,7 +17,7 @@ import { useStage } from './stageFrame';
 
 /** Shares of the rig's size between which the envelope's reach is kept. */
 const LEAST = 0.25;
-const MOST = 0.75;
+const MOST = 0.5;
 /** As long as the momentum arrow is at the most (QuantityArrows), as a share of the rig's size. */
 const ARROW = 0.28;
 
@@ -61,7 +61,7 @@ export function MomentumEnvelope({ areInnerShown, momentum }: MomentumEnvelopePr
       {areInnerShown &&
         shape.inner.map((surface, k) => (
           // biome-ignore lint/suspicious/noArrayIndexKey: the surfaces have an order and nothing else.
-          <Surface key={k} surface={surface} scale={scale} colour={palette.fail} fill={0.05} stroke={0.22} />
+          <Surface key={k} surface={surface} scale={scale} colour={palette.soft} fill={0.03} stroke={0.3} />
         ))}
       <lineSegments ref={line} geometry={spoke} raycast={noRaycast} renderOrder={17} frustumCulled={false}>
         <lineBasicMaterial color={colour} depthTest={false} transparent />

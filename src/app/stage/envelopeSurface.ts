@@ -5,6 +5,8 @@ import type { Rig } from '../../core/rig';
 /** Rings and points to a ring: fine enough to look round, coarse enough to be made in a few milliseconds. */
 const ROWS = 24;
 const COLUMNS = 48;
+/** Widest piece of a surface, as a share of its reach: a step of its directions is an eighth of a radian. */
+const WIDEST = 0.25;
 
 export interface EnvelopeSurface {
   /** 3 per point, N*m*s. */
@@ -15,10 +17,22 @@ export interface EnvelopeSurface {
   readonly lines: readonly number[];
 }
 
-const isThere = ({ points }: MomentumSurface, ...at: readonly number[]): boolean =>
-  at.every((k) => Number.isFinite(points[3 * k] as number));
+/**
+ * Whether points of the surface belong together: all there, and no further apart than a piece of it may be. Where the
+ * direction passes a gimbal axis that wheel turns about at once, and the surface has a hole with a rim.
+ */
+function isWhole({ points }: MomentumSurface, widest: number, ...at: readonly number[]): boolean {
+  return at.every((k, i) => {
+    const other = at[(i + 1) % at.length] as number;
+    let square = 0;
+    for (let axis = 0; axis < 3; axis++)
+      square += ((points[3 * k + axis] as number) - (points[3 * other + axis] as number)) ** 2;
+    return square <= widest * widest;
+  });
+}
 
-function meshOf(surface: MomentumSurface): EnvelopeSurface {
+function meshOf(surface: MomentumSurface, widest: number): EnvelopeSurface {
+  const isThere = (of: MomentumSurface, ...at: readonly number[]): boolean => isWhole(of, widest, ...at);
   const { rows, columns } = surface;
   const triangles: number[] = [];
   const lines: number[] = [];
@@ -68,5 +82,7 @@ export function envelopeShape(
     );
     if (size > reach) reach = size;
   }
-  return reach > 0 ? { outer: meshOf(outer), inner: inner.map(meshOf), reach } : undefined;
+  if (reach === 0) return undefined;
+  const widest = WIDEST * reach;
+  return { outer: meshOf(outer, widest), inner: inner.map((surface) => meshOf(surface, widest)), reach };
 }

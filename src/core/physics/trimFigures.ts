@@ -13,16 +13,21 @@ const NOTES: FormulaNotes<'offset' | 'moment' | 'ballast' | 'left'> = {
   left: { formula: 'y = (m y + m_b y_b) / (m + m_b)', source: 'moments about the middle line' },
 };
 
+/** m. */
+const DUST = 1e-12;
+
 /** What stands off the middle line, and what a ballast leaves of it. Without a ballast: the first two figures alone. */
 export function trimFigures(
   { whole }: Pick<CompiledRig, 'whole'>,
   ballast: TrimBallast | undefined,
 ): readonly Figure[] {
   const mass = input('Mass', whole.mass, 'mass');
-  const offset = input('Centre of mass to the left, y', whole.com[1], 'length');
-  const moment = whole.mass * STANDARD_GRAVITY * whole.com[1];
+  // Less than this is what rounding leaves of a body alike on both sides.
+  const y = Math.abs(whole.com[1]) < DUST ? 0 : whole.com[1];
+  const offset = input('Centre of mass to the left, y', y, 'length');
+  const moment = whole.mass * STANDARD_GRAVITY * y;
   const figures = [
-    figure('trimOffset', 'Centre of mass to the left', whole.com[1], 'length', NOTES.offset, [mass]),
+    figure('trimOffset', 'Centre of mass to the left', y, 'length', NOTES.offset, [mass]),
     figure('trimMoment', 'Moment it leaves', moment, 'torque', NOTES.moment, [mass, offset]),
   ];
   if (!ballast) return figures;
