@@ -4,7 +4,7 @@ import { GLTFLoader } from 'three/addons/loaders/GLTFLoader.js';
 import { STLLoader } from 'three/addons/loaders/STLLoader.js';
 import { describe, expect, it } from 'vitest';
 import { compileRig } from '../../src/core/physics';
-import { DEMONSTRATIONS, SKIFF, STRIDER } from '../../src/core/rig';
+import { DEMONSTRATIONS, LAYOUTS, layOut, SKIFF, STRIDER } from '../../src/core/rig';
 import { expectClose } from '../support/closeTo';
 import { fileEnding, handOver } from '../support/madeHandover';
 
@@ -67,6 +67,12 @@ describe('the 3D model', () => {
       });
     },
   );
+
+  it.each(LAYOUTS)('of a %s has no errors for the glTF validator either', async (layout) => {
+    const gyros = layOut(layout, SKIFF.array.gyros[0]!, { centre: [0, 0, 0.5], spacing: 0.6, skew: 0.95 });
+    const report = await validateBytes(fileEnding(handOver({ ...SKIFF, array: { gyros } }), '.glb').bytes);
+    expect(report.issues.messages).toEqual([]);
+  });
 
   it('stands on its feet, as tall as the rig', async () => {
     const box = new Box3().setFromObject(await load(fileEnding(handOver(STRIDER), '.glb').bytes));

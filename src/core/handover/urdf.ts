@@ -264,7 +264,6 @@ function gyroParts(compiled: CompiledRig, names: readonly string[], index: numbe
   };
   // Drawn as the plain disc of its radius and volume.
   const thickness = compiled.wheels[index]!.volume / (Math.PI * radius * radius);
-  const motor = gyro.motor;
   return [
     link(`${name}_gimbal`, frame, []),
     link(`${name}_wheel`, rotor, [cylinder(radius, thickness, wheel.centre, spinAxis)]),
@@ -276,9 +275,18 @@ function gyroParts(compiled: CompiledRig, names: readonly string[], index: numbe
       child: `${name}_wheel`,
       at: [0, 0, 0],
       axis: spinAxis,
-      limit: { effort: motor.currentLimit / motor.velocityConstant, velocity: gyro.speed },
+      limit: spinLimit(rig, gyro),
     }),
   ];
+}
+
+/** What a wheel's motor gives at its current limit, and the speed the battery takes it to without load. */
+function spinLimit({ power }: Rig, { motor, spin, speed }: Gyro): { effort: number; velocity: number } {
+  const stall = motor.currentLimit / motor.velocityConstant;
+  return {
+    effort: spin.kind === 'actuated' ? Math.min(spin.torque, stall) : stall,
+    velocity: Math.max(speed, motor.velocityConstant * power.cells * power.cellVoltage),
+  };
 }
 
 /** Names of the gyros as links and joints carry them. */
@@ -306,7 +314,7 @@ export function writeUrdf(compiled: CompiledRig, generator: string): string {
     '<?xml version="1.0" encoding="UTF-8"?>',
     `<robot name="${escapeXml(rig.name)}">`,
     comment(
-      `Written by ${generator}. SI units; x forward, y left, z up. Wheel speed at work: velocity of each spin joint; sense by the rig.`,
+      `Written by ${generator}. SI units; x forward, y left, z up. Velocity of a spin joint is what its motor reaches without load, not the speed it is run at: that stands in the control file.`,
     ),
     ...(legs.length > 0 ? [comment(LEG_NOTE)] : []),
     bodyLink(rig),

@@ -3,7 +3,7 @@ import URDFLoader, { type URDFJoint, type URDFLink, type URDFRobot } from 'urdf-
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { writeUrdf } from '../../../src/core/handover/urdf';
 import { combineBodies, compileRig, type RigidBody } from '../../../src/core/physics';
-import { DEMONSTRATIONS, PACER, type Rig, STRIDER } from '../../../src/core/rig';
+import { DEMONSTRATIONS, layOut, PACER, type Rig, STRIDER } from '../../../src/core/rig';
 import { expectClose } from '../../support/closeTo';
 
 const compile = (rig: Rig) => {
@@ -100,6 +100,25 @@ describe('the robot description, read back by a URDF loader', () => {
     robot.setJointValue('front_tilt', 0.3);
     expectClose(Number(robot.joints.back_tilt?.angle), -0.3, { abs: 1e-12 }); // measured 0
     expect(robot.joints.front_spin?.jointType).toBe('continuous');
+  });
+
+  it('lets a reaction wheel turn from rest, with no more torque than is asked of it', () => {
+    const gyros = layOut('reaction wheel', STRIDER.array.gyros[0]!, {
+      centre: [0, 0, 0.5],
+      spacing: 0,
+      skew: 0,
+    });
+    const robot = load({ ...STRIDER, array: { gyros } });
+    const { motor, spin } = gyros[0]!;
+    const limit = (robot.joints.reaction_wheel_spin!.urdfNode as Element).querySelector('limit');
+    const { cells, cellVoltage } = STRIDER.power;
+    expectClose(Number(limit?.getAttribute('velocity')), motor.velocityConstant * cells * cellVoltage, {
+      rel: 1e-11,
+    }); // measured 2.8e-12
+    expectClose(Number(limit?.getAttribute('effort')), spin.kind === 'actuated' ? spin.torque : 0, {
+      rel: 1e-11,
+    }); // measured 6.6e-13
+    expect(robot.joints.reaction_wheel_tilt?.jointType).toBe('fixed');
   });
 
   it('keeps a leg’s links together as its knee bends, and its knee from bending backwards', () => {
