@@ -3,7 +3,7 @@ import { compileRig } from '../physics';
 import type { Rig } from '../rig';
 import type { Dimension } from '../units';
 import type { LedgerLineName } from './ledger';
-import { createPlanWork, defaultPlanOptions, type PlanWork } from './momentumPlan';
+import { createPlanWork, defaultPlanOptions, type PlanOptions, type PlanWork } from './momentumPlan';
 import { ledgerLines } from './planLedger';
 import { attemptRigPlan } from './planRig';
 import { setUpPlan } from './rigPlan';
@@ -281,13 +281,23 @@ export function tradeRig(rig: Rig, ask: TradeAsk, column: number, row: number): 
   );
 }
 
-/** One cell: a plan of the rig as it then is. A few milliseconds. */
-export function tradeCell(rig: Rig, work: PlanWork): TradeCell {
+/** A start from the last plan helps a plan along, and only holds up the proof that there is none. */
+const COLD: PlanOptions = {
+  ...defaultPlanOptions,
+  solver: { ...defaultPlanOptions.solver, warm: false },
+};
+
+/**
+ * One cell: a plan of the rig as it then is. A few milliseconds.
+ *
+ * @param isLikely  whether the cell before had a plan, so that this one may start from it
+ */
+export function tradeCell(rig: Rig, work: PlanWork, isLikely = true): TradeCell {
   const compiled = compileRig(rig);
   if (compiled.kind === 'refused') return refuse(compiled.refusals);
   const set = setUpPlan(compiled.compiled, GRAIN);
   if (set.kind === 'refused') return refuse(set.refusals);
-  const outcome = attemptRigPlan(set.setting, defaultPlanOptions, work);
+  const outcome = attemptRigPlan(set.setting, isLikely ? defaultPlanOptions : COLD, work);
   switch (outcome.kind) {
     case 'planned': {
       const lines = ledgerLines(outcome.setting, outcome.schedules);
@@ -316,8 +326,12 @@ export function tradeRow(
   row: number,
   work: PlanWork = createPlanWork(),
 ): readonly TradeCell[] {
+  let isLikely = false;
   return Array.from({ length: ask.columns }, (_, column): TradeCell => {
     const changed = tradeRig(rig, ask, column, row);
-    return changed ? tradeCell(changed, work) : { kind: 'refused', sentence: 'This rig has no such number.' };
+    if (!changed) return { kind: 'refused', sentence: 'This rig has no such number.' };
+    const cell = tradeCell(changed, work, isLikely);
+    isLikely = cell.kind === 'planned';
+    return cell;
   });
 }
