@@ -44,6 +44,9 @@ export function BalanceAnswer({ outcome, form }: BalanceAnswerProps) {
   );
 }
 
+/** What rounding leaves of nothing is nothing. */
+const withoutDust = (value: number, scale: number): number => (value < 1e-9 * scale ? 0 : value);
+
 const showGrade = (grade: number | undefined): string =>
   grade === undefined ? 'no grade in use' : `G ${formatNumber(grade, 2)}`;
 
@@ -99,7 +102,7 @@ function Plane({ name, plane, form }: PlaneProps) {
       )}
       <p>
         {formatNumber(grade.before, 3)} mm/s, {showGrade(grade.gradeBefore)} before;{' '}
-        {formatNumber(grade.after, 3)} mm/s, {showGrade(grade.gradeAfter)} after.
+        {formatNumber(withoutDust(grade.after, grade.before), 3)} mm/s, {showGrade(grade.gradeAfter)} after.
       </p>
     </Group>
   );

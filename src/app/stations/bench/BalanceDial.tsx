@@ -31,11 +31,10 @@ export function BalanceDial({ name, mass, angle, holes }: BalanceDialProps) {
   const degrees = `${((angle * 180) / Math.PI).toFixed(1)}°`;
   const [x, y] = place(angle, RIM);
   const [inX, inY] = place(angle, 16);
-  const [textX, textY] = place(angle, RIM - 28);
   return (
     <svg
       className="balance-dial"
-      viewBox="0 0 220 220"
+      viewBox="-14 0 248 220"
       role="img"
       aria-label={`${name}: ${grams} at ${degrees}`}
     >
@@ -67,9 +66,6 @@ export function BalanceDial({ name, mass, angle, holes }: BalanceDialProps) {
       })}
       <line className="dial-arm" x1={inX} y1={inY} x2={x} y2={y} />
       <circle className="dial-weight" cx={x} cy={y} r="8" />
-      <text className="dial-grams" x={textX} y={textY + 4}>
-        {grams}
-      </text>
     </svg>
   );
 }

@@ -1,5 +1,6 @@
 import { Cautions } from '../spin/Cautions';
 import { useIdentifying } from './identifying';
+import '../spin/spin.css';
 
 /** What a wheel or a gimbal at the bench can do to a hand, as the rig calls for it. */
 export function BenchCautions() {

@@ -36,6 +36,11 @@ export function LinkPanel() {
   return (
     <>
       {isConnected && <Release shown={shown} />}
+      {isConnected && (
+        <p className="aside">
+          It asks the device’s firmware to let go. It is no emergency stop: keep the power switch in reach.
+        </p>
+      )}
       <DeviceChoice isFixed={shown !== undefined} />
       {refusal && <p className="bench-refusal">{refusal}</p>}
       <Connection shown={shown} />
@@ -53,7 +58,7 @@ function Release({ shown }: { readonly shown: LinkSnapshot }) {
     <div className="link-release">
       <button type="button" onClick={release}>
         <b>Release</b>
-        <span>sends “{stopLine}” at once</span>
+        <small>sends “{stopLine}” at once</small>
       </button>
       {shown.stop && (
         <p role="status">
@@ -62,9 +67,6 @@ function Release({ shown }: { readonly shown: LinkSnapshot }) {
             : `“${stopLine}” could not be sent: take the power off.`}
         </p>
       )}
-      <p className="aside">
-        It asks the device’s firmware to let go. It is no emergency stop: keep the power switch in reach.
-      </p>
     </div>
   );
 }
