@@ -35,7 +35,8 @@ export function expectCoverage(
     }
     for (const [name, truth] of Object.entries(truths)) {
       const e = outcome.estimates.find((x) => x.name === name);
-      if (!e) throw new Error(`${label}: no estimate "${name}" among ${outcome.estimates.map((x) => x.name)}`);
+      if (!e)
+        throw new Error(`${label}: no estimate "${name}" among ${outcome.estimates.map((x) => x.name)}`);
       if (e.low <= truth && truth <= e.high) inside[name] = (inside[name] ?? 0) + 1;
       widths[name] = [...(widths[name] ?? []), (e.high - e.low) / 2];
     }
