@@ -155,10 +155,10 @@ describe('the simulated device', () => {
     let unaided = 0;
     for (let t = 10; t < 18; t += 0.01) {
       body.sample(t, out);
-      if (t > 10.1) expect(out[3]).toBe(0);
+      if (t > 10.1) expect(Math.abs(out[3] as number)).toBe(0);
       unaided = Math.max(unaided, Math.abs(out[0] as number));
     }
-    expect(unaided).toBeGreaterThan(1.5 * most); // measured 2.2 times
+    expect(unaided).toBeGreaterThan(1.5 * most); // measured 2.39 times
   });
   it('follows a schedule where the feet stand flat, and has nothing to feed back', () => {
     const evaluation = evaluate(
