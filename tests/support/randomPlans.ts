@@ -88,7 +88,13 @@ function drawFirm(random: Random, nodes: number, intervals: number): FirmSupport
     const at = Math.floor(random() * nodes);
     force[at] = 0;
   }
-  return { kind: 'firm', ask: drawSignal(random, nodes, amplitude), verticalForce: force, pressureMin, pressureMax };
+  return {
+    kind: 'firm',
+    ask: drawSignal(random, nodes, amplitude),
+    verticalForce: force,
+    pressureMin,
+    pressureMax,
+  };
 }
 
 function drawLean(random: Random, nodes: number): LeanSupport {

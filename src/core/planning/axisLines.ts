@@ -186,7 +186,7 @@ function servoLines(
       have: schedule.tiltRate.map(
         (rate) => servo.stallTorque * Math.max(0, 1 - Math.abs(rate) / servo.noLoadSpeed),
       ),
-      askFormula: '|J_g d²δ/dt² + h ω_body cos δ| × gimbals',
+      askFormula: '|J_g d²δ/dt² − h ω_body cos δ| × gimbals',
       haveFormula: 'T_s (1 − |dδ/dt| / ω₀)',
       inputs: [inertia, wheel, input('Stall torque T_s', servo.stallTorque, 'torque')],
       source: 'array law; straight speed-torque line of a servo, common practice',

@@ -158,7 +158,7 @@ function writePressureRows(
  * Servo torque at node k over its limit, to first order about the pass before. With s = sin(tilt), c = cos
  * and K = torque scale over momentum scale, one servo bears
  *
- *   gimbals ( J ( K (control - previous) / (c step) + K^2 control^2 s / c^3 ) + h (body rate + lean rate) c ).
+ *   gimbals ( J ( K (control - previous) / (c step) + K^2 control^2 s / c^3 ) - h (body rate + lean rate) c ).
  */
 function writeServoRows(
   problem: MomentumPlanProblem,
@@ -185,7 +185,7 @@ function writeServoRows(
   const speed = layout.torqueScale / layout.momentumScale;
   const jump = (inertia * speed) / problem.step;
   const smooth = inertia * speed * speed;
-  const gyro = unit * servo.wheelMomentum;
+  const gyro = -unit * servo.wheelMomentum;
   const body = bodyRate ? bodyRate[k % bodyRate.length] : 0;
   const byControl = jump / c + (2 * smooth * now * s) / c ** 3;
   const byMomentum =

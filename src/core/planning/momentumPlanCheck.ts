@@ -85,7 +85,7 @@ function servoTorqueAt(axis: AxisPlan, tilt: number, rate: number, jump: number,
   if (!servo) return 0;
   const smooth = kind === 'gimballed' ? rate * rate * Math.tan(tilt) : 0;
   return (
-    servo.gimbals * (servo.gimbalInertia * (jump + smooth) + servo.wheelMomentum * bodyRate * Math.cos(tilt))
+    servo.gimbals * (servo.gimbalInertia * (jump + smooth) - servo.wheelMomentum * bodyRate * Math.cos(tilt))
   );
 }
 

@@ -18,7 +18,10 @@ export interface AxisArray {
   readonly servo: ServoLimit | null;
 }
 
-/** What turns the gimbals: torque asked of it is inertia * tilt'' + wheelMomentum * body rate * cos(tilt). */
+/**
+ * What turns the gimbals: torque asked of it is inertia * tilt'' - wheelMomentum * body rate * cos(tilt). The
+ * minus is that of the energy given to the body: momentum + h sin(tilt) pushes it with -h cos(tilt) tilt'.
+ */
 export interface ServoLimit {
   /** N m, of one servo at its output */
   readonly torque: number;

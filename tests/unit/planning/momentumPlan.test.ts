@@ -1,4 +1,4 @@
-import { describe, expect, test } from 'vitest';
+import { describe, expect, it, test } from 'vitest';
 import {
   attemptPlan,
   createPlanWork,
@@ -6,7 +6,11 @@ import {
   type FoundPlan,
 } from '../../../src/core/planning/momentumPlan';
 import { scaleMomentum, shiftCentre, widenSupport } from '../../../src/core/planning/momentumPlanChanges';
-import { checkPlanLimits, isWithinLimits } from '../../../src/core/planning/momentumPlanCheck';
+import {
+  checkPlanLimits,
+  fillServoTorque,
+  isWithinLimits,
+} from '../../../src/core/planning/momentumPlanCheck';
 import { planMomentum } from '../../../src/core/planning/momentumPlanDiagnosis';
 import type {
   FirmSupport,
@@ -128,7 +132,7 @@ describe('a plan for a body that leans', () => {
 describe('servo torque', () => {
   test('keeps its limit, gyroscopic back-load of the body rate included', () => {
     const servo = { torque: 0.12, gimbalInertia: 4e-4, wheelMomentum: 0.5, gimbals: 1 };
-    const bodyRate = Float64Array.from({ length: 120 }, (_, k) => 0.15 * Math.cos((2 * Math.PI * k) / 120));
+    const bodyRate = Float64Array.from({ length: 120 }, (_, k) => -0.15 * Math.cos((2 * Math.PI * k) / 120));
     const loaded = (limit: number): MomentumPlanProblem =>
       cyclicPlan(
         [
@@ -277,5 +281,54 @@ describe('the smallest array', () => {
     const problem = walkingPlan(96, 5, { ...pairOfWheels, servo });
     const sized = sizeMomentum(problem, 0, defaultPlanOptions, createPlanWork());
     expect(sized.kind).toBe('sized');
+  });
+});
+
+describe('the servo of a leaning body', () => {
+  it('gives the gimbal what it and the body gain: power of the servo is that of both, the wheel held', () => {
+    // J tilt'' tilt' + (-h cos(tilt) tilt') (body rate) = servo torque * tilt', whatever the three rates are.
+    const h = 0.4;
+    const J = 3e-4;
+    const axis = {
+      array: {
+        kind: 'gimballed' as const,
+        momentum: h,
+        tiltMin: -1,
+        tiltMax: 1,
+        tiltRate: 10,
+        torque: Number.POSITIVE_INFINITY,
+        servo: { torque: 5, gimbalInertia: J, wheelMomentum: h, gimbals: 1 },
+      },
+      support: {
+        kind: 'lean' as const,
+        inertia: 1,
+        stiffness: 0,
+        damping: 0,
+        demand: new Float64Array(2),
+        weight: 10,
+        leanMin: -1,
+        leanMax: 1,
+      },
+      bodyRate: null,
+    };
+    const tilt = 0.5;
+    const rate = 2;
+    const acceleration = 7;
+    const bodyRate = 0.3;
+    const one = (value: number) => Float64Array.of(value);
+    const schedule = {
+      momentum: one(h * Math.sin(tilt)),
+      torque: one(-h * Math.cos(tilt) * rate),
+      tilt: one(tilt),
+      tiltRate: one(rate),
+      tiltAcceleration: one(acceleration),
+      servoTorque: one(Number.NaN),
+      pressure: one(0),
+      lean: one(0),
+      leanRate: one(bodyRate),
+    };
+    fillServoTorque(axis, schedule);
+    const power = J * acceleration * rate + schedule.torque[0]! * bodyRate;
+    expectClose(schedule.servoTorque[0]! * rate, power, { rel: 1e-12 }); // measured 0
   });
 });
