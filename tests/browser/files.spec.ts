@@ -8,7 +8,7 @@ test('the tilt schedule comes out as CSV with units in its header', async ({ pag
   await openApp(page);
   await goTo(page, 'Plan');
   const coming = page.waitForEvent('download');
-  await page.getByRole('button', { name: 'Tilt schedule as CSV' }).click();
+  await page.getByRole('button', { name: 'Schedule as CSV' }).click();
   const download = await coming;
   expect(download.suggestedFilename()).toBe('strider-tilt-schedule.csv');
   const lines = readFileSync(await download.path(), 'utf8')

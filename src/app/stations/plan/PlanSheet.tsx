@@ -34,7 +34,7 @@ export function PlanSheet() {
           {isFirm && <RigNumber path={['footing', 'margin']} />}
         </Fold>
       )}
-      <Fold title="See what each does">
+      <Fold title="See what each does" isOpenAtFirst>
         <SwitchFields />
       </Fold>
       <SizeFold />
