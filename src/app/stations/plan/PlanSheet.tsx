@@ -1,9 +1,8 @@
 import { RigNumber } from '../../fields/RigFields';
-import { Toggle } from '../../fields/Toggle';
 import { Group } from '../../sheet/Group';
 import { Refusals } from '../../sheet/Refusals';
+import { SwitchFields } from '../../sheet/SwitchFields';
 import { useDocument } from '../../state/document';
-import { useSession } from '../../state/session';
 import { Fold } from './Fold';
 import { GaitFields } from './GaitFields';
 import { HoldingFold } from './HoldingFold';
@@ -41,33 +40,6 @@ export function PlanSheet() {
       <TradeFold />
       <HoldingFold />
       <WavesFold />
-    </>
-  );
-}
-
-function SwitchFields() {
-  const switches = useSession((session) => session.switches);
-  const set = useSession((session) => session.setSwitches);
-  return (
-    <>
-      <Toggle
-        label="Array"
-        hint={switches.isArrayOn ? 'gimbals move' : 'gimbals locked'}
-        isOn={switches.isArrayOn}
-        onChange={(isArrayOn) => set({ isArrayOn })}
-      />
-      <Toggle
-        label="Plan"
-        hint={switches.isPlanOn ? 'tilts follow the schedule' : 'tilts rest at zero'}
-        isOn={switches.isPlanOn}
-        onChange={(isPlanOn) => set({ isPlanOn })}
-      />
-      <Toggle
-        label="Feedback"
-        hint={switches.isFeedbackOn ? 'the sensor is answered' : 'nothing answers the sensor'}
-        isOn={switches.isFeedbackOn}
-        onChange={(isFeedbackOn) => set({ isFeedbackOn })}
-      />
     </>
   );
 }

@@ -1,9 +1,11 @@
 import { useEffect } from 'react';
+import { USUAL_DOUBT } from '../../../core/trial';
+import { formatQuantity } from '../../../core/units';
 import { RigFields } from '../../fields/RigFields';
 import { Toggle } from '../../fields/Toggle';
 import { Group } from '../../sheet/Group';
 import { Refusals } from '../../sheet/Refusals';
-import { useSession } from '../../state/session';
+import { SwitchFields } from '../../sheet/SwitchFields';
 import { CompareFields } from './CompareFields';
 import { ControlFields } from './ControlFields';
 import { GainFields } from './GainFields';
@@ -23,7 +25,7 @@ export function TrialSheet() {
       <Refusals />
       <ShoveFields />
       <Group title="Switched on">
-        <SwitchFields />
+        <RunFields />
       </Group>
       <ControlFields />
       <GainFields />
@@ -36,34 +38,17 @@ export function TrialSheet() {
   );
 }
 
-function SwitchFields() {
-  const switches = useSession((session) => session.switches);
-  const setSwitches = useSession((session) => session.setSwitches);
+const AS_BUILT = `centre ${formatQuantity(USUAL_DOUBT.centreAcross, 'length', 'mm', 1)} off, wheels ${formatQuantity(1 - USUAL_DOUBT.wheelSpeed, 'ratio', '%', 1)} slow`;
+
+function RunFields() {
   const isAsDrawn = useTrial((trial) => trial.isAsDrawn);
   const set = useTrial((trial) => trial.set);
   return (
     <>
-      <Toggle
-        label="Array"
-        hint={switches.isArrayOn ? 'gimbals move' : 'gimbals locked'}
-        isOn={switches.isArrayOn}
-        onChange={(isArrayOn) => setSwitches({ isArrayOn })}
-      />
-      <Toggle
-        label="Plan"
-        hint={switches.isPlanOn ? 'tilts follow the schedule' : 'tilts rest at zero'}
-        isOn={switches.isPlanOn}
-        onChange={(isPlanOn) => setSwitches({ isPlanOn })}
-      />
-      <Toggle
-        label="Feedback"
-        hint={switches.isFeedbackOn ? 'the sensor is answered' : 'nothing answers the sensor'}
-        isOn={switches.isFeedbackOn}
-        onChange={(isFeedbackOn) => setSwitches({ isFeedbackOn })}
-      />
+      <SwitchFields />
       <Toggle
         label="Built as drawn"
-        hint={isAsDrawn ? 'to the last gram' : 'centre 4 mm off, wheels 3 % slow'}
+        hint={isAsDrawn ? 'to the last gram' : AS_BUILT}
         isOn={isAsDrawn}
         onChange={(now) => set({ isAsDrawn: now })}
       />
